@@ -1,0 +1,64 @@
+// Package source reads the tables of a plan and says, for every row, whether and where it is used.
+//
+// A table holds the declared columns and the derived ones, typed, in rows as they stand in the file. No row is ever
+// dropped: an excluded row keeps its place with the reason. Wrong cells are reported all together, with file, line and
+// column, as spec.Errors.
+package source
+
+import "lotproof/spec"
+
+// A Table is one source of the plan as read.
+type Table struct {
+	Source  spec.Source
+	Bytes   int64
+	SHA256  string   // digest of the file as read
+	Ignored []string // headings in the file that the plan does not declare
+	Columns []Column // declared columns in the order of the file, then derived columns by name
+	Rows    []Row    // data rows in the order of the file
+}
+
+// A Column holds the cells of one column, one a row of the table.
+type Column struct {
+	Name     string
+	Type     spec.ColumnType
+	Unit     string
+	Decimals int // -1: not declared
+	Derived  bool
+	Numbers  []float64 // type number: the value, NaN where missing
+	Texts    []string  // the cell as written (empty for derived columns)
+	Missing  []bool
+}
+
+// A Row is one data row of a file.
+type Row struct {
+	Line     int // line in the file (workbook: row number) where the row starts, from 1
+	Excluded int // index into Source.Exclude of the first rule that applies, or -1
+}
+
+// State says what becomes of a row in one statistic.
+type State uint8
+
+const (
+	Used     State = iota // enters the estimate
+	Excluded              // taken out by an exclusion of the source
+	Missing               // a needed column has no value
+	Outside               // the statistic's condition or comparison does not select it
+)
+
+// A Selection is the row ledger of one statistic: read = used + excluded + missing + outside.
+type Selection struct {
+	Table  *Table
+	States []State  // one a row of the table
+	Lacks  []string // for missing rows: the first needed column without a value; else ""
+	Rows   []int    // indices of the used rows, ascending
+	Group  []int    // with a comparison: for each used row, 0 or 1, the place in Compare.Of; else nil
+}
+
+// Counts are the totals of a ledger.
+type Counts struct {
+	Read     int `json:"read"`
+	Used     int `json:"used"`
+	Excluded int `json:"excluded"`
+	Missing  int `json:"missing"`
+	Outside  int `json:"outside"`
+}

@@ -9,7 +9,7 @@ type Catalogue struct {
 
 // A StatisticEntry describes one statistic to the reader of a plan.
 type StatisticEntry struct {
-	Name       string // trade name, lower case; matched without regard to case
+	Name       string // trade name as printed; matched without regard to case
 	Columns    int    // how many number columns "of" must name: 0, 1 or 2
 	Parameters []Parameter
 }

@@ -62,3 +62,10 @@ type Counts struct {
 	Missing  int `json:"missing"`
 	Outside  int `json:"outside"`
 }
+
+// Data is everything that was read for a plan: the tables in the order of Plan.Sources and one ledger a statistic, in
+// the order of Plan.Statistics.
+type Data struct {
+	Tables     []*Table
+	Selections []*Selection
+}

@@ -46,7 +46,7 @@ type StandardErrorer interface {
 
 // A Definition is one entry of the catalogue.
 type Definition struct {
-	Name        string           // trade name, lower case
+	Name        string           // trade name as printed; matched without regard to case
 	Columns     int              // how many number columns it takes: 0, 1 or 2
 	Parameters  []spec.Parameter // what "with" may hold
 	MinN        int              // fewest observations with a value

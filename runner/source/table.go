@@ -15,6 +15,9 @@ type Table struct {
 	Ignored []string // headings in the file that the plan does not declare
 	Columns []Column // declared columns in the order of the file, then derived columns by name
 	Rows    []Row    // data rows in the order of the file
+
+	sheet    string        // of a workbook, else empty
+	unjudged map[int]doubt // rows in which an exclusion cannot be judged
 }
 
 // A Column holds the cells of one column, one a row of the table.
@@ -68,4 +71,32 @@ type Counts struct {
 type Data struct {
 	Tables     []*Table
 	Selections []*Selection
+}
+
+// Column returns the column of that name, or nil.
+func (t *Table) Column(name string) *Column {
+	for i := range t.Columns {
+		if t.Columns[i].Name == name {
+			return &t.Columns[i]
+		}
+	}
+	return nil
+}
+
+// Counts adds up the ledger.
+func (s *Selection) Counts() Counts {
+	c := Counts{Read: len(s.States)}
+	for _, state := range s.States {
+		switch state {
+		case Used:
+			c.Used++
+		case Excluded:
+			c.Excluded++
+		case Missing:
+			c.Missing++
+		case Outside:
+			c.Outside++
+		}
+	}
+	return c
 }

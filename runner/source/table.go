@@ -3,6 +3,11 @@
 // A table holds the declared columns and the derived ones, typed, in rows as they stand in the file. No row is ever
 // dropped: an excluded row keeps its place with the reason. Wrong cells are reported all together, with file, line and
 // column, as spec.Errors.
+//
+// Blanks round headings and cells do not count. A number is an optional sign, digits, a point with digits, an exponent;
+// nothing is guessed from other forms. A cell that is empty, or one of the missing marks of the source, holds no value.
+// Values are finite, and −0 is 0. A condition takes a category or text without a value for the empty text, and is never
+// judged where it needs a number that the row lacks.
 package source
 
 import "lotproof/spec"

@@ -1,14 +1,10 @@
 package spec
 
 import (
-	"bytes"
 	"cmp"
-	"errors"
 	"fmt"
 	"io"
-	"regexp"
 	"slices"
-	"strconv"
 	"strings"
 	"unicode"
 	"unicode/utf8"
@@ -132,71 +128,6 @@ func hidden(c rune) bool {
 	return false
 }
 
-var yamlLine = regexp.MustCompile(`^yaml: (?:line (\d+): )?(.*)$`)
-
-// document reads the text into a tree of nodes, the only thing that the YAML library is asked for: its conversions of
-// values change numbers in silence.
-func (r *reader) document(text string) *yaml.Node {
-	decoder := yaml.NewDecoder(bytes.NewReader([]byte(text)))
-	var first, second yaml.Node
-	if err := decoder.Decode(&first); errors.Is(err, io.EOF) || err == nil && len(first.Content) == 0 {
-		r.wrongAt(Position{1, 1}, "the plan is empty", "write a study plan")
-		return nil
-	} else if err != nil {
-		r.syntax(err)
-		return nil
-	}
-	switch err := decoder.Decode(&second); {
-	case errors.Is(err, io.EOF):
-	case err != nil:
-		r.syntax(err)
-		return nil
-	default:
-		r.wrong(&second, "a second document follows", "write one plan in one file, and no line ---")
-	}
-	root := first.Content[0]
-	if root.Kind == yaml.ScalarNode && root.Tag == "!!null" && root.Value == "" {
-		r.wrongAt(Position{1, 1}, "the plan is empty", "write a study plan")
-		return nil
-	}
-	return root
-}
-
-// syntax words a mistake in the layout of the plan. The library says a line at most.
-func (r *reader) syntax(err error) {
-	line, problem := 1, err.Error()
-	if m := yamlLine.FindStringSubmatch(problem); m != nil {
-		problem = m[2]
-		if n, err := strconv.Atoi(m[1]); err == nil {
-			line = n
-		}
-	}
-	fix := "look at the indentation, the colons and the quotation marks of this line and the one above"
-	for _, known := range []struct{ contains, problem, fix string }{
-		{"found character that cannot start any token", "a character stands where no text can begin",
-			"indent with blanks, not with tabs, and put text that begins with a sign between quotation marks"},
-		{"found a tab", "a tab stands in the indentation", "indent with blanks"},
-		{"mapping values are not allowed", "a colon and a blank stand where no key can be",
-			"put text that holds a colon between quotation marks, and look at the indentation"},
-		{"could not find expected ':'", "a colon is missing after a key", "write key: value"},
-		{"did not find expected key", "a key is expected", "look at the indentation of this line and those near it"},
-		{"did not find expected '-'", "an entry of a list is expected", "begin it with - and indent it like the others"},
-		{"unexpected end of stream", "a quotation mark is not closed", "close it"},
-		{"did not find expected ',' or ']'", "a list is not closed", "separate its entries with commas and close it with ]"},
-		{"did not find expected ',' or '}'", "a mapping is not closed", "separate its keys with commas and close it with }"},
-		{"unknown anchor", "the sign * begins a reference", "put text that begins with * between quotation marks"},
-	} {
-		if strings.Contains(problem, known.contains) {
-			problem, fix = known.problem, known.fix
-		}
-	}
-	last := len(r.lines)
-	if last > 1 && r.lines[last-1] == "" {
-		last--
-	}
-	r.wrongAt(Position{max(1, min(line, last)), 0}, problem, fix)
-}
-
 // shape walks the whole tree and refuses what a plan never needs: references, tags, deep nesting, hidden characters. It
 // says whether the tree can be read further.
 func (r *reader) shape(n *yaml.Node, depth int) bool {
@@ -219,6 +150,11 @@ func (r *reader) shape(n *yaml.Node, depth int) bool {
 		r.wrong(n, fmt.Sprintf("the tag %s is not allowed", n.Tag), "take it out; put text that begins with ! "+
 			"between quotation marks")
 		good = false
+	}
+	if remark := []rune(n.LineComment); len(remark) > 1 && n.Style == 0 && (unicode.IsLetter(remark[1]) ||
+		unicode.IsDigit(remark[1])) {
+		r.wrong(n, fmt.Sprintf("%s begins a remark and does not belong to the text before it", quotable(n.LineComment)),
+			"put the text between quotation marks, or write a blank after #")
 	}
 	if n.Kind == yaml.ScalarNode {
 		for _, c := range n.Value {

@@ -27,7 +27,7 @@ func Compile(text string, columns []Column, want Type, f Functions) (*Program, e
 }
 
 func compile(text string, columns []Column, f Functions) (*compiler, term, *Error) {
-	s, e := words(text)
+	s, e := words(text, columns)
 	if e != nil {
 		return nil, term{}, e
 	}
@@ -35,10 +35,10 @@ func compile(text string, columns []Column, f Functions) (*compiler, term, *Erro
 	if err != nil {
 		return nil, term{}, s.syntax(err)
 	}
-	c := &compiler{scan: s, functions: f, columns: make(map[string]Column, len(columns)), used: map[string]int{}}
+	c := &compiler{scan: s, functions: f, byName: make(map[string]Column, len(columns)), used: map[string]int{}}
 	for _, column := range columns {
-		if id := Identifier(column.Name); Reserved(id) == "" {
-			c.columns[id] = column
+		if id := Identifier(column.Name); Reserved(id) == "" && Writable(id) {
+			c.byName[id] = column
 			c.names = append(c.names, id)
 		}
 	}
@@ -58,7 +58,7 @@ func compile(text string, columns []Column, f Functions) (*compiler, term, *Erro
 type compiler struct {
 	*scan
 	functions Functions
-	columns   map[string]Column // by identifier
+	byName    map[string]Column // by identifier
 	names     []string          // the identifiers, in the order given
 	used      map[string]int    // name in the plan → place in Program.Columns
 	nodes     int
@@ -124,8 +124,11 @@ func (c *compiler) node(n ast.Node, depth int) (term, *Error) {
 }
 
 func (c *compiler) column(id string, from int) (term, *Error) {
-	column, known := c.columns[id]
+	column, known := c.byName[id]
 	if !known {
+		if e := c.unwritable(id, from); e != nil {
+			return term{}, e
+		}
 		fix := "columns here: " + List(c.names)
 		switch near := Nearest(id, c.names); {
 		case len(c.names) == 0:
@@ -263,6 +266,9 @@ func (c *compiler) in(n *ast.BinaryNode, depth int) (term, *Error) {
 	if e != nil {
 		return term{}, e
 	}
+	if x.kind == Condition {
+		return term{}, c.at(from, "in stands after a condition", `write it as in lot in ["A", "B"]`)
+	}
 	list, plain := n.Right.(*ast.ArrayNode)
 	if !plain || len(list.Nodes) == 0 {
 		return term{}, c.at(from, "in wants a list of values", `write it as in lot in ["A", "B"]`)
@@ -273,9 +279,12 @@ func (c *compiler) in(n *ast.BinaryNode, depth int) (term, *Error) {
 		if e != nil {
 			return term{}, e
 		}
-		if !item.literal || item.kind != x.kind {
-			return term{}, c.at(item.from, fmt.Sprintf("the list does not hold a %s here", x.kind),
-				"list values of one kind: numbers, or texts between quotation marks")
+		if !item.literal {
+			return term{}, c.at(item.from, "a list holds values only", "list numbers, or texts between quotation marks")
+		}
+		if item.kind != x.kind {
+			return term{}, c.at(item.from, fmt.Sprintf("the list holds a %s here, and in looks for a %s", item.kind, x.kind),
+				"list values of the type of the column")
 		}
 		if item.kind == Number {
 			numbers[item.number(nil)] = true
@@ -313,7 +322,7 @@ func (c *compiler) call(name string, arguments []ast.Node, from, depth int) (ter
 		of = append(of, x.number)
 	}
 	if len(of) < f.least || len(of) > f.most {
-		return term{}, c.at(from, fmt.Sprintf("%s is given %d numbers", name, len(of)), "write it as in "+f.usage)
+		return term{}, c.at(from, fmt.Sprintf("%s has the wrong number of values, %d", name, len(of)), "write it as in "+f.usage)
 	}
 	return term{kind: Number, from: from, number: f.bind(c.functions, of)}, nil
 }
@@ -345,11 +354,19 @@ func (s *scan) lexical(err error) *Error {
 		return s.at(e.From, "a backslash in a text is not understood", `write \\ for one backslash`)
 	}
 	if e.From >= 0 && e.From < len(s.text) {
-		return s.at(e.From, fmt.Sprintf("%s has no meaning in an expression", strconv.Quote(string(s.text[e.From]))),
-			"take it out")
+		c := string(s.text[e.From])
+		fix := "take it out"
+		if better := signs[c]; better != "" {
+			fix = "write " + better
+		}
+		return s.at(e.From, fmt.Sprintf("%q has no meaning in an expression", c), fix)
 	}
 	return s.at(e.From, "the expression cannot be read", "")
 }
+
+// signs are typographic signs that word processors put, and what to write for them.
+var signs = map[string]string{"≥": ">=", "≤": "<=", "≠": "!=", "“": `"`, "”": `"`, "„": `"`, "‘": "'", "’": "'", "«": `"`,
+	"»": `"`, "−": "-", "–": "-", "×": "*", "·": "*", "÷": "/", "¬": "not", "∧": "and", "∨": "or", "∈": "in"}
 
 // syntax words what the library says about words in a wrong order.
 func (s *scan) syntax(err error) *Error {
@@ -359,8 +376,10 @@ func (s *scan) syntax(err error) *Error {
 	}
 	if e.From >= 0 && e.From < len(s.text) && !strings.Contains(e.Message, "token EOF") {
 		word := string(s.text[e.From:min(max(e.To, e.From+1), len(s.text))])
-		return s.at(e.From, fmt.Sprintf("%s is not expected here", strconv.Quote(word)),
-			"see what is missing before it, or take it out")
+		if !strings.ContainsAny(word, "\"'") {
+			word = strconv.Quote(word)
+		}
+		return s.at(e.From, word+" is not expected here", "see what is missing before it, or take it out")
 	}
 	return s.at(len(s.text), "the expression ends too early", "write what follows, or close the parenthesis")
 }

@@ -5,6 +5,7 @@ import (
 	"regexp"
 	"slices"
 	"strconv"
+	"strings"
 	"unicode"
 
 	"github.com/expr-lang/expr/file"
@@ -23,6 +24,7 @@ var decimal = regexp.MustCompile(`^(0|[1-9][0-9]*)(\.[0-9]+)?([eE][+-]?[0-9]+)?$
 // A scan holds the text of an expression and its words.
 type scan struct {
 	text    []rune
+	columns []Column
 	numbers map[int]float64 // place of the first character → value
 }
 
@@ -58,8 +60,8 @@ var foreign = map[string]string{
 var operators = []string{"+", "-", "*", "/", "==", "!=", "<", "<=", ">", ">=", "and", "or", "not", "in", ","}
 
 // words reads the text word by word and refuses what the language does not have, before the library makes a tree of it.
-func words(text string) (*scan, *Error) {
-	s := &scan{text: []rune(text), numbers: map[int]float64{}}
+func words(text string, columns []Column) (*scan, *Error) {
+	s := &scan{text: []rune(text), columns: columns, numbers: map[int]float64{}}
 	if len(s.text) > maxLength {
 		return nil, s.at(maxLength, fmt.Sprintf("the expression has %d characters, more than %d", len(s.text), maxLength),
 			"divide it, for instance with a derived column")
@@ -116,15 +118,21 @@ func (s *scan) word(tokens []lexer.Token, i int) *Error {
 		if err != nil {
 			return s.at(token.From, fmt.Sprintf("%q is too large", raw), "")
 		}
+		if mantissa, _, _ := strings.Cut(strings.ToLower(raw), "e"); v == 0 && strings.ContainsAny(mantissa, "123456789") {
+			return s.at(token.From, fmt.Sprintf("%q is too small to be told from 0", raw), "write 0, or another unit")
+		}
 		if _, err := strconv.ParseInt(raw, 10, 64); err != nil && !slices.ContainsFunc([]rune(raw), notDigit) {
 			return s.at(token.From, fmt.Sprintf("%q has too many digits", raw), "write it with a power of ten, as in 1e20")
 		}
 		s.numbers[token.From] = v
 	case lexer.Operator:
-		if raw == "=" || !slices.Contains(operators, token.Value) {
-			return unavailable()
+		if next := tokens[i+1]; next.From == token.To && next.To <= len(s.text) {
+			if two := string(s.text[token.From:next.To]); two == "<>" || two == "=>" || two == "=<" {
+				raw = two
+				return unavailable()
+			}
 		}
-		if token.Value == "." {
+		if !slices.Contains(operators, token.Value) {
 			return unavailable()
 		}
 	case lexer.Bracket:
@@ -144,6 +152,9 @@ func (s *scan) word(tokens []lexer.Token, i int) *Error {
 		_, known := functions[raw]
 		call := tokens[i+1].Is(lexer.Bracket, "(")
 		if call && !known {
+			if e := s.unwritable(raw, token.From); e != nil {
+				return e
+			}
 			fix := "functions here: " + List(functionNames)
 			if near := Nearest(raw, functionNames); near != "" {
 				fix = fmt.Sprintf("did you mean %q? ", near) + fix
@@ -152,6 +163,17 @@ func (s *scan) word(tokens []lexer.Token, i int) *Error {
 		}
 		if !call && known {
 			return s.at(token.From, fmt.Sprintf("%q is a function", raw), "write it as in "+functions[raw].usage)
+		}
+	}
+	return nil
+}
+
+// unwritable says that a name is the beginning of a column that an expression cannot write, or returns nil.
+func (s *scan) unwritable(id string, from int) *Error {
+	for _, c := range s.columns {
+		if !Writable(c.Name) && strings.HasPrefix(Identifier(c.Name), id) {
+			return s.at(from, fmt.Sprintf("column %q cannot be written in an expression", c.Name),
+				"rename it in the data and in the plan, with letters, digits and _")
 		}
 	}
 	return nil

@@ -24,7 +24,8 @@ type mapping struct {
 	r      *reader
 	keys   []string // in the order of the plan
 	fields map[string]field
-	later  bool // whether it holds a key of a later version, so that missing ones may be due to that
+	later  bool            // whether it holds a key of a later version, so that missing ones may be due to that
+	meant  map[string]bool // keys that an unknown key is like, so that they are not missing as well
 }
 
 // isNull says whether a value is left out, or written as null or ~.
@@ -38,14 +39,14 @@ func (r *reader) open(f field, known, later []string) *mapping {
 		if isNull(f.node) {
 			problem = fmt.Sprintf("%s is empty", f.name)
 		}
-		fix := "write them below it, indented, as key: value"
+		fix := "write key: value below it, indented"
 		if len(known) > 0 {
 			fix += "; keys here: " + expression.List(known)
 		}
 		r.wrongAt(f.at, problem, fix)
 		return nil
 	}
-	m := &mapping{field: f, r: r, fields: map[string]field{}}
+	m := &mapping{field: f, r: r, fields: map[string]field{}, meant: map[string]bool{}}
 	lines := map[string]int{}
 	for i := 0; i+1 < len(f.node.Content); i += 2 {
 		key, value := f.node.Content[i], f.node.Content[i+1]
@@ -84,6 +85,7 @@ func (m *mapping) unknown(key *yaml.Node, known, later []string) {
 	}
 	fix := "keys here: " + expression.List(known)
 	if near := expression.Nearest(key.Value, known); near != "" {
+		m.meant[near] = true
 		fix = fmt.Sprintf("did you mean %q? ", near) + fix
 	}
 	m.r.wrong(key, fmt.Sprintf("unknown key %q", quotable(key.Value)), fix)
@@ -98,7 +100,7 @@ func (m *mapping) has(key string) (field, bool) {
 // need returns the value of a key that must be there.
 func (m *mapping) need(key, fix string) (field, bool) {
 	f, given := m.fields[key]
-	if !given && !m.later {
+	if !given && !m.later && !m.meant[key] {
 		problem := fmt.Sprintf("key %q is missing", key)
 		if m.name != "" {
 			problem += " in " + m.name

@@ -85,6 +85,7 @@ const mostCharacters = 20
 // characters refuses what an editor does not show or another program would read otherwise, once a line.
 func (r *reader) characters(text string) {
 	line, column, reported := 1, 1, 0
+	indentation := true
 	for i, size := 0, 0; i < len(text) && len(r.mistakes) < mostCharacters; i += size {
 		var c rune
 		c, size = utf8.DecodeRuneInString(text[i:])
@@ -92,9 +93,15 @@ func (r *reader) characters(text string) {
 			r.wrongAt(Position{line, column}, problem, "save the plan as plain UTF-8 text and take such characters out")
 			reported = line
 		}
+		if c == '\t' && indentation && reported != line && strings.TrimLeft(text[i:], " \t\r\n") != "" &&
+			!strings.HasPrefix(strings.TrimLeft(text[i:], " \t\r"), "\n") {
+			r.wrongAt(Position{line, column}, "a tab stands in the indentation", "indent with blanks")
+			reported = line
+		}
+		indentation = indentation && (c == ' ' || c == '\t')
 		column++
 		if c == '\n' {
-			line, column = line+1, 1
+			line, column, indentation = line+1, 1, true
 		}
 	}
 }

@@ -3,13 +3,12 @@ package spec
 import (
 	"errors"
 	"fmt"
+	"math/big"
 	"regexp"
 	"slices"
 	"strconv"
 	"strings"
 	"unicode/utf8"
-
-	"gopkg.in/yaml.v3"
 
 	"lotproof/spec/expression"
 )
@@ -26,9 +25,9 @@ func (r *reader) scalar(f field) (string, bool) {
 	case isNull(f.node) && f.node.Value != "":
 		r.wrongAt(f.at, fmt.Sprintf("%s is %s, which means no value", f.name, f.node.Value),
 			"write a value; if the word itself is meant, put it between quotation marks")
-	case isNull(f.node), f.node.Kind == yaml.ScalarNode && strings.TrimSpace(f.node.Value) == "":
+	case isNull(f.node), f.node.Kind == scalarNode && strings.TrimSpace(f.node.Value) == "":
 		r.wrongAt(f.at, f.name+" is empty", "write a value, or take the key out")
-	case f.node.Kind != yaml.ScalarNode:
+	case f.node.Kind != scalarNode:
 		r.wrongAt(f.at, f.name+" must be a single value", "write it behind the colon, without a list and without further keys")
 	default:
 		return f.node.Value, true
@@ -42,9 +41,7 @@ func (r *reader) text(f field) (string, bool) {
 	if !ok {
 		return "", false
 	}
-	if f.node.Style&(yaml.LiteralStyle|yaml.FoldedStyle) != 0 {
-		value = strings.TrimRight(value, "\n")
-	}
+	value = strings.TrimRight(value, "\n") // a text in block style ends with a line feed
 	if strings.TrimSpace(value) != value {
 		r.wrongAt(f.at, f.name+" begins or ends with a blank", "take the blank out")
 		return "", false
@@ -133,12 +130,11 @@ func (r *reader) digits(f field, whole bool) (string, bool) {
 		wanted, form = "whole number", wholeNumber
 	}
 	if f.node.Style != 0 {
-		fix := "write it without them"
+		fix := "write it without quotation marks"
 		if !form.MatchString(value) {
 			fix = "write digits, without quotation marks"
 		}
-		r.wrongAt(f.at, fmt.Sprintf("%s must be a %s, and %q stands between quotation marks or as a text", f.name, wanted,
-			quotable(value)), fix)
+		r.wrongAt(f.at, fmt.Sprintf("%s must be a %s, and %q is marked as a text", f.name, wanted, quotable(value)), fix)
 		return "", false
 	}
 	if form.MatchString(value) && len(value) <= mostDigits {
@@ -169,10 +165,25 @@ func (r *reader) digitsFix(value string, whole bool) string {
 	case whole && decimal.MatchString(value):
 		return "write digits only, without a sign, a point or an exponent"
 	}
+	if share := percent(value); share != "" && !whole {
+		return "write " + share
+	}
 	if whole {
-		return "write digits only, as in 20000"
+		return "write digits only"
 	}
 	return "write digits, as in 1.25"
+}
+
+// percent returns "0.95 for 95 %" for a percentage from 0 to 100, with the sign or without it, else "".
+func percent(value string) string {
+	value = strings.TrimSpace(strings.TrimSuffix(value, "%"))
+	exact, ok := new(big.Rat).SetString(value)
+	if !decimal.MatchString(value) || strings.ContainsAny(value, "eE") || len(value) > mostDigits/2 || !ok ||
+		exact.Sign() <= 0 || exact.Cmp(big.NewRat(100, 1)) >= 0 {
+		return ""
+	}
+	share := exact.Quo(exact, big.NewRat(100, 1)).FloatString(mostDigits/2 + 2)
+	return strings.TrimRight(share, "0") + " for " + value + " %"
 }
 
 // number returns a decimal number.

@@ -157,7 +157,9 @@ func (r *reader) columnName(at Position, name string, s *Source) bool {
 	}
 	id := expression.Identifier(name)
 	for _, c := range s.Columns {
-		if problem == "" && expression.Identifier(c.Name) == id {
+		if problem == "" && c.Name == name {
+			problem = "is given twice"
+		} else if problem == "" && expression.Identifier(c.Name) == id {
 			problem = fmt.Sprintf("reads like column %q, because blanks are written _ in conditions", c.Name)
 		}
 	}

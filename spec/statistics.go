@@ -186,8 +186,8 @@ func (r *reader) of(m *mapping, s *Statistic, entry *StatisticEntry, source *Sou
 		return
 	}
 	columns := r.names(f)
-	if entry != nil && len(columns) > 0 && len(columns) != entry.Columns {
-		r.wrongAt(f.at, fmt.Sprintf("%s takes %s, and of names %d", entry.Name, columnCount(entry.Columns), len(columns)),
+	if given := max(1, len(f.node.Content)); entry != nil && len(columns) > 0 && given != entry.Columns {
+		r.wrongAt(f.at, fmt.Sprintf("%s takes another number of columns than %d", entry.Name, given),
 			"name "+columnCount(entry.Columns))
 	}
 	for _, n := range columns {
@@ -238,6 +238,7 @@ func (r *reader) with(m *mapping, s *Statistic, entry *StatisticEntry, source *S
 		case p.Default != "":
 			value, _ := strconv.ParseFloat(p.Default, 64)
 			s.With = append(s.With, Setting{Name: p.Name, Text: p.Default, Number: value})
+		case w != nil && w.meant[p.Name]:
 		default:
 			at := m.at
 			if w != nil {
@@ -404,13 +405,13 @@ func (r *reader) accept(m *mapping, s *Statistic, plan *mapping, boundKnown bool
 		r.wrongAt(a.at, fmt.Sprintf("%s has a criterion, and the plan has no rounding rule", m.name),
 			"write rounding: {rule: absolute} in the outermost place, or rule: rounded with ties")
 	}
-	limit := func(key string, against Bound, other string) *Number {
+	limit := func(key string, against, other Bound) *Number {
 		f, given := a.has(key)
 		if !given {
 			return nil
 		}
 		if boundKnown && s.Bound == against {
-			r.wrongAt(f.at, fmt.Sprintf("%s needs a %s bound, and bound is %s", key, other, against),
+			r.wrongAt(f.at, fmt.Sprintf("%s is judged by the %s bound, and bound is %s", key, other, against),
 				fmt.Sprintf("write bound: %s, or bound: two-sided", other))
 		}
 		n, ok := r.number(f)
@@ -419,8 +420,8 @@ func (r *reader) accept(m *mapping, s *Statistic, plan *mapping, boundKnown bool
 		}
 		return &n
 	}
-	s.Accept.LowerAtLeast = limit("lower_at_least", Upper, "lower")
-	s.Accept.UpperAtMost = limit("upper_at_most", Lower, "upper")
+	s.Accept.LowerAtLeast = limit("lower_at_least", Upper, Lower)
+	s.Accept.UpperAtMost = limit("upper_at_most", Lower, Upper)
 	if lower, upper := s.Accept.LowerAtLeast, s.Accept.UpperAtMost; lower != nil && upper != nil {
 		l, _ := new(big.Rat).SetString(lower.Text)
 		u, _ := new(big.Rat).SetString(upper.Text)

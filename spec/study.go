@@ -109,6 +109,7 @@ var (
 )
 
 func (r *reader) studyID(f field) string {
+	f.name = "study id"
 	id, ok := r.line(f, maxStudyID)
 	if !ok {
 		return ""
@@ -180,13 +181,13 @@ func (r *reader) confidence(f field) []Number {
 
 func (r *reader) level(f field) (Number, bool) {
 	if f.node.Kind == scalarNode && f.node.Style == 0 {
-		percent := strings.TrimSpace(strings.TrimSuffix(f.node.Value, "%"))
-		if level, given := new(big.Rat).SetString(percent); given && decimal.MatchString(percent) && len(percent) <= 20 &&
-			(percent != f.node.Value || level.Cmp(big.NewRat(1, 1)) >= 0 || level.Sign() <= 0) {
+		value := strings.TrimSpace(strings.TrimSuffix(f.node.Value, "%"))
+		one := big.NewRat(1, 1)
+		if level, given := new(big.Rat).SetString(value); given && decimal.MatchString(value) && len(value) <= 20 &&
+			(value != f.node.Value || level.Cmp(one) >= 0 || level.Sign() <= 0) {
 			fix := "write a level below 1, as in 0.95"
-			if level.Cmp(big.NewRat(1, 1)) > 0 && level.Cmp(big.NewRat(100, 1)) < 0 && !strings.ContainsAny(percent, "eE") {
-				share := new(big.Rat).Quo(level, big.NewRat(100, 1))
-				fix = fmt.Sprintf("write %s for %s %%", strings.TrimRight(share.FloatString(22), "0"), percent)
+			if share := percent(value); share != "" && level.Cmp(one) > 0 {
+				fix = "write " + share
 			}
 			r.wrongAt(f.at, fmt.Sprintf("confidence %s is not between 0 and 1", f.node.Value), fix)
 			return Number{}, false

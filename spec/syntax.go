@@ -16,11 +16,12 @@ func (r *reader) document(text string) *yaml.Node {
 	case err != nil:
 		r.syntax(err)
 		return nil
+	case second != nil:
+		r.wrong(second, "a second document follows", "write one plan in one file, and no line ---")
+		return nil
 	case first == nil:
 		r.wrongAt(Position{1, 1}, "the plan is empty", "write a study plan")
 		return nil
-	case second != nil:
-		r.wrong(second, "a second document follows", "write one plan in one file, and no line ---")
 	}
 	return first
 }

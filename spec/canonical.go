@@ -12,11 +12,11 @@ import (
 
 // digest sets the digest of the plan and, where it is derived, the seed.
 //
-// Plan.SHA256 is the SHA-256 of the canonical content, which is the plan as JSON in UTF-8: a mapping is an object with its
-// keys in ascending order of their UTF-8 bytes; a list is an array in the order of the plan; every value is a string that
-// holds its text, so that the number 1.20 is "1.20"; there is no white space between the parts. In a string, " and \ are
-// written \" and \\, a line feed \n and a tab \t; every other character stands for itself (a plan holds no other control
-// characters). Comments, indentation, quotation marks and the order of keys thus do not enter.
+// Plan.SHA256 is the SHA-256 of the canonical content, which is the plan as JSON in UTF-8: a mapping is an object with
+// its keys in ascending order of their UTF-8 bytes; a list is an array in the order of the plan; every value is a
+// string that holds its text, so that the number 1.20 is "1.20"; there is no white space between the parts. In a
+// string, " and \ are written \" and \\, a line feed \n and a tab \t; every other character stands for itself (a plan
+// holds no other control characters). Comments, indentation, quotation marks and the order of keys thus do not enter.
 //
 // With Python 3 and PyYAML, as an independent way to the same digest:
 //
@@ -24,8 +24,8 @@ import (
 //	text = json.dumps(content, sort_keys=True, separators=(",", ":"), ensure_ascii=False)
 //	print(hashlib.sha256(text.encode()).hexdigest())
 //
-// A derived seed is made of the first 8 bytes, most significant first, of the SHA-256 of the canonical content without the
-// key "seed" of the outermost mapping.
+// A derived seed is made of the first 8 bytes, most significant first, of the SHA-256 of the canonical content without
+// the key "seed" of the outermost mapping.
 func (r *reader) digest() {
 	sum := sha256.Sum256([]byte(canonical(r.root, "")))
 	r.plan.SHA256 = hex.EncodeToString(sum[:])

@@ -30,7 +30,8 @@ func TestDigest(t *testing.T) {
 func TestCanonical(t *testing.T) {
 	root, _, err := decode("b: [1.20, 'x\"y', \"a\\tb\\nc\\\\\"]\na: {é: ~, a b: {}}\nseed: 7\n")
 	must(t, err)
-	if got, want := canonical(root, ""), `{"a":{"a b":{},"é":"~"},"b":["1.20","x\"y","a\tb\nc\\"],"seed":"7"}`; got != want {
+	if got, want := canonical(root, ""),
+		`{"a":{"a b":{},"é":"~"},"b":["1.20","x\"y","a\tb\nc\\"],"seed":"7"}`; got != want {
 		t.Errorf("got %s, want %s", got, want)
 	}
 	if got, want := canonical(root, "seed"), `{"a":{"a b":{},"é":"~"},"b":["1.20","x\"y","a\tb\nc\\"]}`; got != want {
@@ -62,7 +63,8 @@ func TestLayoutDoesNotEnter(t *testing.T) {
 					return
 				}
 				for i, j := 0, len(n.Content)-2; i < j; i, j = i+2, j-2 {
-					n.Content[i], n.Content[i+1], n.Content[j], n.Content[j+1] = n.Content[j], n.Content[j+1], n.Content[i], n.Content[i+1]
+					n.Content[i], n.Content[i+1], n.Content[j], n.Content[j+1] = n.Content[j], n.Content[j+1], n.Content[i],
+						n.Content[i+1]
 				}
 			},
 			"text in double quotation marks": func(n *yaml.Node) {

@@ -49,8 +49,8 @@ func (r *reader) condition(f field, s *Source) string {
 	return r.expression(f, columns, expression.Condition, r.broken[s.Name])
 }
 
-// expression returns the text of an expression and checks it. Where the columns themselves hold mistakes, only the text is
-// read: what could be said of it may be due to them.
+// expression returns the text of an expression and checks it. Where the columns themselves hold mistakes, only the text
+// is read: what could be said of it may be due to them.
 func (r *reader) expression(f field, columns []expression.Column, want expression.Type, columnsWrong bool) string {
 	text, ok := r.text(f)
 	if !ok || columnsWrong {
@@ -64,8 +64,8 @@ func (r *reader) expression(f field, columns []expression.Column, want expressio
 	return text
 }
 
-// within returns the place in the plan of a place in the text of a value: exactly, where the plan shows the text as it is,
-// else the place of the value.
+// within returns the place in the plan of a place in the text of a value: exactly, where the plan shows the text as it
+// is, else the place of the value.
 func (r *reader) within(f field, text string, line, column int) Position {
 	n := f.node
 	if n.Style&yaml.LiteralStyle != 0 {

@@ -8,9 +8,9 @@ import (
 	"testing"
 )
 
-// FuzzRead: whatever the text, Read ends and gives a plan or mistakes; every mistake says something and has a place inside
-// the file; no two are the same, and they stand in file order; a plan reads again with the same digest, also without
-// trailing blank lines.
+// FuzzRead: whatever the text, Read ends and gives a plan or mistakes; every mistake says something and has a place
+// inside the file; no two are the same, and they stand in file order; a plan reads again with the same digest, also
+// without trailing blank lines.
 func FuzzRead(f *testing.F) {
 	names, err := filepath.Glob("../examples/*/*.yaml")
 	must(f, err)

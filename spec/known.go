@@ -48,7 +48,8 @@ func (r *reader) entry(f field, kind string, known, later []string) int {
 	if near := expression.Nearest(name, known); near != "" {
 		list = fmt.Sprintf("did you mean %q? ", near) + list
 	} else if near := expression.Nearest(name, later); near != "" {
-		r.wrongAt(f.at, fmt.Sprintf("%s %q is not known, and %s is not available in this version", kind, quotable(name), near),
+		r.wrongAt(f.at, fmt.Sprintf("%s %q is not known, and %s is not available in this version", kind,
+			quotable(name), near),
 			list)
 		return -1
 	}

@@ -71,7 +71,8 @@ func (c change) plan(t testing.TB) string {
 	} else {
 		at = slices.Index(lines, c.after) + 1
 	}
-	if at < 0 || at == 0 && len(c.out) == 0 || at+len(c.out) > len(lines) || !slices.Equal(lines[at:at+len(c.out)], c.out) {
+	if at < 0 || at == 0 && len(c.out) == 0 || at+len(c.out) > len(lines) || !slices.Equal(lines[at:at+len(c.out)],
+		c.out) {
 		t.Fatalf("mistakes.txt:%d: the lines to be changed are not in small.yaml", c.line)
 	}
 	return strings.Join(slices.Concat(lines[:at], c.in, lines[at+len(c.out):]), "\n") + "\n"
@@ -99,12 +100,14 @@ func TestNoText(t *testing.T) {
 	deep := strings.Repeat("[", 20000)
 	many := "seed: [" + strings.Repeat("1,", maxItems) + "1]"
 	for _, tt := range []struct{ name, text, want string }{
-		{"Latin-1", "lotproof: 1\ntitle: Gr\xf6\xdfe\n", "plan.yaml:2:10: the text is not UTF-8 here; save the plan as plain " +
-			"UTF-8 text and take such characters out"},
+		{"Latin-1", "lotproof: 1\ntitle: Gr\xf6\xdfe\n",
+			"plan.yaml:2:10: the text is not UTF-8 here; save the plan as plain " +
+				"UTF-8 text and take such characters out"},
 		{"UTF-16", "\xff\xfel\x00", "plan.yaml:1:1: the text is not UTF-8 here; save the plan as plain UTF-8 text and take " +
 			"such characters out"},
-		{"too large", strings.Repeat("#", maxBytes+1), "plan.yaml: the plan is larger than 1 MiB; name the plan, not a data " +
-			"file"},
+		{"too large", strings.Repeat("#", maxBytes+1),
+			"plan.yaml: the plan is larger than 1 MiB; name the plan, not a data " +
+				"file"},
 		{"very deep", "seed: " + deep, "plan.yaml:1: lists and keys are nested too deeply; follow the plan language, which " +
 			"needs few levels"},
 		{"very long list", many, "plan.yaml:1:7: 2001 entries are too many; write at most 2000 in one place"},

@@ -110,8 +110,8 @@ func (m *mapping) need(key, fix string) (field, bool) {
 	return f, given
 }
 
-// items returns the entries of a list, or nothing if there are none. A value that stands alone is a list of one if alone
-// is true.
+// items returns the entries of a list, or nothing if there are none. A value that stands alone is a list of one if
+// alone is true.
 func (r *reader) items(f field, alone bool) []field {
 	switch {
 	case isNull(f.node):

@@ -2,9 +2,9 @@ package spec
 
 import "strings"
 
-// Position returns where the plan says what path names, or the nearest enclosing thing that it says: for a key left out,
-// the place of the mapping that lacks it. The place is that of the value if the value is one text or number, else of the
-// key; for an entry of a list, its beginning.
+// Position returns where the plan says what path names, or the nearest enclosing thing that it says: for a key left
+// out, the place of the mapping that lacks it. The place is that of the value if the value is one text or number, else
+// of the key; for an entry of a list, its beginning.
 //
 // A path goes from the outermost key inwards: keys joined by points, places in a list, from 0, in brackets. Sources,
 // columns and derived columns go by their names. Examples:

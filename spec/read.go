@@ -20,8 +20,8 @@ const (
 
 // Read reads a plan and checks it against the catalogue. file is the name used in messages.
 //
-// A plan with mistakes gives no Plan but Errors: all that were found, in file order. Where the text is not YAML at all, or
-// holds characters that it must not, these mistakes come alone. Any other error is one of reading from r.
+// A plan with mistakes gives no Plan but Errors: all that were found, in file order. Where the text is not YAML at all,
+// or holds characters that it must not, these mistakes come alone. Any other error is one of reading from r.
 func Read(r io.Reader, file string, cat Catalogue) (*Plan, error) {
 	content, err := io.ReadAll(io.LimitReader(r, maxBytes+1))
 	if err != nil {

@@ -191,7 +191,8 @@ func TestEveryKey(t *testing.T) {
 	for i := range want {
 		equal(t, want[i].ID, p.Statistics[i], want[i])
 	}
-	equal(t, "amendments", p.Amendments, []Amendment{{1, "2041-02-03", "Second source added.", "Asked for by the sponsor.", false}})
+	equal(t, "amendments", p.Amendments, []Amendment{{1, "2041-02-03", "Second source added.",
+		"Asked for by the sponsor.", false}})
 }
 
 // Later packages point into the plan by path; the text at the place is what they mean.
@@ -235,7 +236,8 @@ func TestPosition(t *testing.T) {
 		{"nowhere.at[7].all", "# An invented study"},
 	} {
 		at := p.Position(tt.path)
-		if at.Line < 1 || at.Line > len(lines) || at.Column < 1 || !strings.HasPrefix(lines[at.Line-1][at.Column-1:], tt.text) {
+		if at.Line < 1 || at.Line > len(lines) || at.Column < 1 || !strings.HasPrefix(lines[at.Line-1][at.Column-1:],
+			tt.text) {
 			t.Errorf("%s: place %d:%d, want that of %q", tt.path, at.Line, at.Column, tt.text)
 		}
 	}

@@ -58,8 +58,9 @@ func (r *reader) resampling(f field) *resamplingFields {
 		s.unit = r.names(f)
 		for i, n := range s.unit {
 			if n.name == Row && i < len(s.unit)-1 {
-				r.wrongAt(n.at, "row stands before another unit", "write units from the outermost to the innermost; row, the single "+
-					"row, can only be the last")
+				r.wrongAt(n.at, "row stands before another unit",
+					"write units from the outermost to the innermost; row, the single "+
+						"row, can only be the last")
 				s.unit = nil
 				break
 			}
@@ -166,8 +167,9 @@ func (r *reader) units(s *resamplingFields, source *Source) {
 	}
 	for _, n := range s.strata {
 		if slices.ContainsFunc(s.unit, func(u named) bool { return u.name == n.name }) {
-			r.wrongAt(n.at, fmt.Sprintf("column %s is both stratum and unit", n.name), "take it out of strata: a stratum must hold "+
-				"several units")
+			r.wrongAt(n.at, fmt.Sprintf("column %s is both stratum and unit", n.name),
+				"take it out of strata: a stratum must hold "+
+					"several units")
 			continue
 		}
 		r.columnOf(n, source, "stratum", TypeCategory)
@@ -189,7 +191,8 @@ func (r *reader) enough(resamples int, at Position, levels []Number, bound Bound
 			tails, sides = big.NewRat(2, 1), "two-sided"
 		}
 		ratio := tails.Quo(tails, outside) // least B+1
-		least := new(big.Int).Quo(new(big.Int).Add(ratio.Num(), new(big.Int).Sub(ratio.Denom(), big.NewInt(1))), ratio.Denom())
+		least := new(big.Int).Quo(new(big.Int).Add(ratio.Num(), new(big.Int).Sub(ratio.Denom(), big.NewInt(1))),
+			ratio.Denom())
 		if big.NewInt(int64(resamples)+1).Cmp(least) < 0 {
 			r.wrongAt(at, fmt.Sprintf("%d resamples are too few for confidence %s, %s", resamples, level.Text, sides),
 				fmt.Sprintf("write at least %d, better ten times as many", new(big.Int).Sub(least, big.NewInt(1))))

@@ -28,7 +28,8 @@ func (r *reader) scalar(f field) (string, bool) {
 	case isNull(f.node), f.node.Kind == scalarNode && strings.TrimSpace(f.node.Value) == "":
 		r.wrongAt(f.at, f.name+" is empty", "write a value, or take the key out")
 	case f.node.Kind != scalarNode:
-		r.wrongAt(f.at, f.name+" must be a single value", "write it behind the colon, without a list and without further keys")
+		r.wrongAt(f.at, f.name+" must be a single value",
+			"write it behind the colon, without a list and without further keys")
 	default:
 		return f.node.Value, true
 	}

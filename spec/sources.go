@@ -69,7 +69,8 @@ func (r *reader) source(f field, s *Source) {
 	if f, given := m.has("sheet"); given {
 		s.Sheet, _ = r.line(f, maxLine)
 		if s.File != "" && !strings.EqualFold(path.Ext(s.File), ".xlsx") {
-			r.wrongAt(f.at, fmt.Sprintf("a sheet is named, and %s is not a workbook", s.File), "take sheet out, or name an .xlsx file")
+			r.wrongAt(f.at, fmt.Sprintf("a sheet is named, and %s is not a workbook", s.File),
+				"take sheet out, or name an .xlsx file")
 		}
 	}
 	if f, given := m.has("sha256"); given {
@@ -229,7 +230,8 @@ func (r *reader) columnType(f field) string {
 		value, _ = r.choice(f, columnTypes)
 		return value
 	}
-	r.wrongAt(f.at, fmt.Sprintf("type %q is not available in this version", quotable(value)), "write "+choices(columnTypes))
+	r.wrongAt(f.at, fmt.Sprintf("type %q is not available in this version", quotable(value)),
+		"write "+choices(columnTypes))
 	return ""
 }
 
@@ -258,7 +260,8 @@ func (r *reader) derive(f field, s *Source, columnsWrong bool) {
 			}
 			d.Decimals = m.decimals()
 			var given bool
-			if formula, given = m.need("formula", "write formula: and how the column is computed, as in strength - 1.2"); !given {
+			if formula, given = m.need("formula",
+				"write formula: and how the column is computed, as in strength - 1.2"); !given {
 				continue
 			}
 		}
@@ -301,7 +304,8 @@ func (r *reader) dataFile(f field) string {
 	clean := path.Clean(name)
 	switch {
 	case strings.Contains(name, `\`) && !strings.Contains(name, ":"):
-		return wrong("holds a backslash", "write forward slashes, which every system reads: "+strings.ReplaceAll(name, `\`, "/"))
+		return wrong("holds a backslash", "write forward slashes, which every system reads: "+strings.ReplaceAll(name,
+			`\`, "/"))
 	case strings.HasPrefix(name, "/"), strings.HasPrefix(name, "~"), len(name) > 1 && name[1] == ':':
 		return wrong("is an absolute path", "write it as seen from the plan, in its folder or below: "+travel)
 	case strings.ContainsAny(name, `<>:"|?*\`):

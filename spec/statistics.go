@@ -43,8 +43,8 @@ func (r *reader) statistics(f field, plan *mapping, byDefault *resamplingFields)
 	}
 }
 
-// plainID is the form in which ids must differ: as in expressions, and without regard to letter case, because sheets and
-// files are named after them.
+// plainID is the form in which ids must differ: as in expressions, and without regard to letter case, because sheets
+// and files are named after them.
 func plainID(id string) string { return strings.ToLower(strings.ReplaceAll(id, " ", "_")) }
 
 func (r *reader) statisticID(f field, ids map[string]*Statistic, lines map[string]int) string {
@@ -147,7 +147,8 @@ func (r *reader) sourceOf(m *mapping, s *Statistic) *Source {
 			return &r.plan.Sources[0]
 		}
 		if len(known) > 1 {
-			r.wrongAt(m.at, fmt.Sprintf(`key "source" is missing in %s`, m.name), "name one of the sources: "+expression.List(known))
+			r.wrongAt(m.at, fmt.Sprintf(`key "source" is missing in %s`, m.name),
+				"name one of the sources: "+expression.List(known))
 		}
 		return nil
 	}
@@ -399,7 +400,8 @@ func (r *reader) accept(m *mapping, s *Statistic, plan *mapping, boundKnown bool
 		return
 	}
 	if len(f.node.Content) == 0 {
-		r.wrongAt(a.at, "accept holds no criterion", "write lower_at_least: or upper_at_most: with a number, or take accept out")
+		r.wrongAt(a.at, "accept holds no criterion",
+			"write lower_at_least: or upper_at_most: with a number, or take accept out")
 	}
 	if _, given := plan.has("rounding"); !given {
 		r.wrongAt(a.at, fmt.Sprintf("%s has a criterion, and the plan has no rounding rule", m.name),
@@ -432,7 +434,8 @@ func (r *reader) accept(m *mapping, s *Statistic, plan *mapping, boundKnown bool
 	}
 }
 
-// unusedDefault checks the plan's default resampling where every statistic overrides it: its columns must exist somewhere.
+// unusedDefault checks the plan's default resampling where every statistic overrides it: its columns must exist
+// somewhere.
 func (r *reader) unusedDefault(s *resamplingFields) {
 	for _, n := range append(slices.Clone(s.unit), s.strata...) {
 		if n.name == Row {
@@ -442,7 +445,8 @@ func (r *reader) unusedDefault(s *resamplingFields) {
 			return r.broken[source.Name] || findColumn(&source, n.name) != nil
 		})
 		if !found && len(r.plan.Sources) > 0 {
-			r.wrongAt(n.at, fmt.Sprintf("no source declares a column %q", quotable(n.name)), "correct the name, or declare the column")
+			r.wrongAt(n.at, fmt.Sprintf("no source declares a column %q", quotable(n.name)),
+				"correct the name, or declare the column")
 		}
 	}
 }

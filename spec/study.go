@@ -59,7 +59,8 @@ func (r *reader) readPlan(root *node) {
 		}
 	}
 	r.plan.Statistics = []Statistic{}
-	if f, given := m.need("statistics", "write statistics: and below it a list, each entry with id:, statistic:, of:"); given {
+	if f, given := m.need("statistics",
+		"write statistics: and below it a list, each entry with id:, statistic:, of:"); given {
 		r.statistics(f, m, resampling)
 	}
 }
@@ -120,7 +121,8 @@ func (r *reader) studyID(f field) string {
 	}
 	switch {
 	case !studyID.MatchString(id):
-		return wrong("holds other characters than letters, digits, . _ and -", "write it with these; it names the output folder")
+		return wrong("holds other characters than letters, digits, . _ and -",
+			"write it with these; it names the output folder")
 	case id[0] == '.' || id[0] == '-':
 		return wrong("begins with "+id[:1], "begin it with a letter or a digit; it names the output folder")
 	case strings.HasSuffix(id, "."):
@@ -227,9 +229,11 @@ func (r *reader) rounding(f field) {
 	}
 	switch {
 	case ok && rule == "absolute" && given:
-		r.wrongAt(ties.at, "ties have no meaning with rule absolute, which rounds nothing", "take ties out, or write rule: rounded")
+		r.wrongAt(ties.at, "ties have no meaning with rule absolute, which rounds nothing",
+			"take ties out, or write rule: rounded")
 	case ok && rule == "rounded" && !given:
-		r.wrongAt(m.at, `key "ties" is missing in rounding`, "write ties: even or ties: away, for a value half-way between two")
+		r.wrongAt(m.at, `key "ties" is missing in rounding`,
+			"write ties: even or ties: away, for a value half-way between two")
 	}
 }
 

@@ -3,6 +3,7 @@ package spec
 import (
 	"errors"
 	"io"
+	"strconv"
 	"strings"
 
 	"gopkg.in/yaml.v3"
@@ -52,9 +53,10 @@ func decode(text string) (first, second *yaml.Node, err error) {
 // syntax notes a mistake in the layout of the plan. What the library says of it is put into plain words. It says a line
 // too, but often that of the beginning of the mapping or list in which the mistake is, or the line before.
 func (r *reader) syntax(err error) {
-	problem := strings.TrimPrefix(err.Error(), "yaml: ")
-	if strings.HasPrefix(problem, "line ") {
-		_, problem, _ = strings.Cut(problem, ": ")
+	problem, line := strings.TrimPrefix(err.Error(), "yaml: "), 1
+	if place, rest, given := strings.Cut(problem, ": "); given && strings.HasPrefix(place, "line ") {
+		line, _ = strconv.Atoi(place[len("line "):])
+		problem = rest
 	}
 	fix := "look at the indentation, the colons and the quotation marks of this line and the one above"
 	for _, known := range []struct{ contains, problem, fix string }{
@@ -67,16 +69,19 @@ func (r *reader) syntax(err error) {
 			"put text with quotation marks or a colon in it between quotation marks"},
 		{"did not find expected '-'", "this is no entry of the list above", "begin it with -, or indent it as what it is"},
 		{"unexpected end of stream", "a quotation mark is not closed", "close it"},
-		{"did not find expected ',' or ']'", "a list is not closed", "separate its entries with commas and close it with ]; " +
-			"put text with brackets or commas between quotation marks"},
-		{"did not find expected ',' or '}'", "a mapping is not closed", "separate its keys with commas and close it with }; " +
-			"put text with brackets or commas between quotation marks"},
+		{"did not find expected ',' or ']'", "a list is not closed",
+			"separate its entries with commas and close it with ]; " +
+				"put text with brackets or commas between quotation marks"},
+		{"did not find expected ',' or '}'", "a mapping is not closed",
+			"separate its keys with commas and close it with }; " +
+				"put text with brackets or commas between quotation marks"},
 		{"node content", "a value or a key is missing", "look at the brackets and commas of this line"},
 		{"<document start>", "text follows after the end of the plan", "indent it like the keys above, or take it out"},
 		{"escape character", `a backslash between " and " is not understood`, `write \\ for a backslash, or put the text ` +
 			"between ' and '"},
 		{"unknown anchor", "the sign * begins a reference", "put text that begins with * between quotation marks"},
-		{"alphabetic or numeric", "the sign & or * names a reference", "put text that begins with it between quotation marks"},
+		{"alphabetic or numeric", "the sign & or * names a reference",
+			"put text that begins with it between quotation marks"},
 		{"exceeded max depth", "lists and keys are nested too deeply", "follow the plan language, which needs few levels"},
 		{"expected '>'", "the sign ! begins a tag", "put text that begins with ! between quotation marks"},
 		{"tag", "the sign ! begins a tag", "put text that begins with ! between quotation marks"},
@@ -88,19 +93,31 @@ func (r *reader) syntax(err error) {
 			break
 		}
 	}
-	r.wrongAt(Position{Line: r.firstWrongLine()}, problem, fix)
+	last := len(r.lines)
+	if last > 1 && r.lines[last-1] == "" {
+		last--
+	}
+	if len(r.plan.Text) <= maxSearched {
+		line = r.firstWrongLine()
+	}
+	r.wrongAt(Position{Line: max(1, min(line, last))}, problem, fix)
 }
 
-// mostTrials bounds the search of firstWrongLine in a long plan with many lists over several lines.
-const mostTrials = 200
+// Bounds of firstWrongLine, in bytes: of a plan in which it searches, and of all that it reads again.
+const (
+	maxSearched = 256 << 10
+	maxTrials   = 8 << 20
+)
 
-// firstWrongLine finds the line with which the plan ceases to be readable: the one after the longest readable beginning.
-// If the mistake is within a list or text over several lines, that is the line where the list or text begins.
+// firstWrongLine finds the line with which the plan ceases to be readable: the one after the longest readable
+// beginning. If the mistake is within a list or text over several lines, that is the line where the list or text
+// begins.
 func (r *reader) firstWrongLine() int {
 	trials := 0
 	readable := func(lines int) bool {
-		trials++
-		_, _, err := decode(strings.Join(r.lines[:lines], "\n") + "\n")
+		text := strings.Join(r.lines[:lines], "\n") + "\n"
+		trials += len(text)
+		_, _, err := decode(text)
 		return err == nil
 	}
 	good, bad := 0, len(r.lines) // the first lines that are known to be readable, and known not to be
@@ -114,7 +131,7 @@ func (r *reader) firstWrongLine() int {
 		}
 		// Perhaps only because a list goes on below.
 		further := good
-		for next := good + 2; next <= len(r.lines) && next < good+30 && trials < mostTrials; next++ {
+		for next := good + 2; next <= len(r.lines) && next < good+30 && trials < maxTrials; next++ {
 			if readable(next) {
 				further = next
 				break
@@ -125,9 +142,5 @@ func (r *reader) firstWrongLine() int {
 		}
 		good, bad = further, len(r.lines)
 	}
-	last := len(r.lines)
-	if last > 1 && r.lines[last-1] == "" {
-		last--
-	}
-	return min(good+1, last)
+	return good + 1
 }

@@ -322,7 +322,8 @@ func (c *compiler) call(name string, arguments []ast.Node, from, depth int) (ter
 		of = append(of, x.number)
 	}
 	if len(of) < f.least || len(of) > f.most {
-		return term{}, c.at(from, fmt.Sprintf("%s has the wrong number of values, %d", name, len(of)), "write it as in "+f.usage)
+		return term{}, c.at(from, fmt.Sprintf("%s has the wrong number of values, %d", name, len(of)),
+			"write it as in "+f.usage)
 	}
 	return term{kind: Number, from: from, number: f.bind(c.functions, of)}, nil
 }
@@ -365,7 +366,8 @@ func (s *scan) lexical(err error) *Error {
 }
 
 // signs are typographic signs that word processors put, and what to write for them.
-var signs = map[string]string{"≥": ">=", "≤": "<=", "≠": "!=", "“": `"`, "”": `"`, "„": `"`, "‘": "'", "’": "'", "«": `"`,
+var signs = map[string]string{"≥": ">=", "≤": "<=", "≠": "!=", "“": `"`, "”": `"`, "„": `"`, "‘": "'", "’": "'",
+	"«": `"`,
 	"»": `"`, "−": "-", "–": "-", "×": "*", "·": "*", "÷": "/", "¬": "not", "∧": "and", "∨": "or", "∈": "in"}
 
 // syntax words what the library says about words in a wrong order.

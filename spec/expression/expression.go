@@ -1,9 +1,9 @@
 // Package expression compiles the conditions and formulas of a study plan.
 //
-// The language is small, so that a plan means the same for ever: columns by name (blanks written as _), decimal numbers,
-// texts between quotation marks, + - * /, == != < <= > >=, in [ … ], and, or, not, parentheses, and the functions abs,
-// sqrt, min, max, exp, log (natural) and log10. Every number is a 64-bit binary floating-point number. Nothing has a side
-// effect, reads a clock or draws at random; length and depth are bounded.
+// The language is small, so that a plan means the same for ever: columns by name (blanks written as _), decimal
+// numbers, texts between quotation marks, + - * /, == != < <= > >=, in [ … ], and, or, not, parentheses, and the
+// functions abs, sqrt, min, max, exp, log (natural) and log10. Every number is a 64-bit binary floating-point number.
+// Nothing has a side effect, reads a clock or draws at random; length and depth are bounded.
 //
 // A general-purpose library reads the text into a tree (its lexer and its parser are all that is used of it, in this
 // package only); this package refuses everything else that the library knows, checks the types, and computes.
@@ -27,8 +27,9 @@ type Column struct {
 	Levels []string // the texts that can occur; empty: any
 }
 
-// Functions computes what this package leaves to its caller: natural exponential, natural and decimal logarithm. Compile
-// needs no functions to check an expression; a Program compiled without them must not be evaluated if it calls one.
+// Functions computes what this package leaves to its caller: natural exponential, natural and decimal logarithm.
+// Compile needs no functions to check an expression; a Program compiled without them must not be evaluated if it calls
+// one.
 type Functions struct {
 	Exp, Log, Log10 func(float64) float64
 }

@@ -64,9 +64,11 @@ func TestCondition(t *testing.T) {
 		text string
 		want bool
 	}{
-		{`arm == "aged"`, true}, {`arm != 'aged'`, false}, {`"fresh" == arm`, false}, {"strength > 2", false}, {"strength >= 2", true},
+		{`arm == "aged"`, true}, {`arm != 'aged'`, false}, {`"fresh" == arm`, false}, {"strength > 2", false},
+		{"strength >= 2", true},
 		{"2 < width", true}, {"width <= 8", true}, {"width < 8", false}, {"width == 8.0", true}, {"width != 8", false},
-		{`note in ["void", "doubtful"]`, true}, {`note not in ["void"]`, false}, {"width in [1, 8]", true}, {"width in [-8]", false},
+		{`note in ["void", "doubtful"]`, true}, {`note not in ["void"]`, false}, {"width in [1, 8]", true},
+		{"width in [-8]", false},
 		{`not (arm == "fresh")`, true}, {`arm == "fresh" or strength > 1 and width > 9`, false},
 		{`arm == "aged" or strength > 1 and width > 9`, true}, {`(arm == "aged" or strength > 1) and width > 9`, false},
 		{"strength + 1 > 2.5 and width / 2 == 4", true}, {`not not (width > 1)`, true}, {`arm == note`, false},
@@ -309,7 +311,8 @@ func TestNames(t *testing.T) {
 		writable                   bool
 	}{
 		{"age weeks", "age_weeks", "", true}, {"and", "and", "a word", true}, {"log10", "log10", "a function", true},
-		{"1st", "1st", "", false}, {"strength (N)", "strength_(N)", "", false}, {"Größe2", "Größe2", "", true}, {"", "", "", false},
+		{"1st", "1st", "", false}, {"strength (N)", "strength_(N)", "", false}, {"Größe2", "Größe2", "", true}, {"",
+			"", "", false},
 	} {
 		if got := Identifier(tt.name); got != tt.identifier {
 			t.Errorf("Identifier(%q) = %q, want %q", tt.name, got, tt.identifier)
@@ -326,7 +329,8 @@ func TestNames(t *testing.T) {
 func TestNearest(t *testing.T) {
 	candidates := []string{"statistic", "status", "of", "lower_at_least"}
 	for _, tt := range []struct{ name, want string }{
-		{"statstic", "statistic"}, {"Statistic", "statistic"}, {"lower at least", "lower_at_least"}, {"fo", ""}, {"sttaus", "status"},
+		{"statstic", "statistic"}, {"Statistic", "statistic"}, {"lower at least", "lower_at_least"}, {"fo", ""},
+		{"sttaus", "status"},
 		{"median", ""}, {"", ""},
 	} {
 		if got := Nearest(tt.name, candidates); got != tt.want {

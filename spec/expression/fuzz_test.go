@@ -7,11 +7,13 @@ import (
 	"unicode/utf8"
 )
 
-// FuzzCompile: whatever the text, Compile ends; a mistake lies within the text; what is accepted, is accepted again and has
-// a finite value or says why not.
+// FuzzCompile: whatever the text, Compile ends; a mistake lies within the text; what is accepted, is accepted again and
+// has a finite value or says why not.
 func FuzzCompile(f *testing.F) {
-	for _, text := range []string{"strength - 1.20", `arm == "aged" and not (note in ["void", 'x'])`, "15 * strength / width",
-		"log10(max(strength, 1e-3)) > -2", "((1))", "3 > 2 > 1", "a // b", "[1, 2]", "1..2", `"\u00e9"`, "sqrt(-1)", "Größe\n> 1"} {
+	for _, text := range []string{"strength - 1.20", `arm == "aged" and not (note in ["void", 'x'])`,
+		"15 * strength / width",
+		"log10(max(strength, 1e-3)) > -2", "((1))", "3 > 2 > 1", "a // b", "[1, 2]", "1..2", `"\u00e9"`, "sqrt(-1)",
+		"Größe\n> 1"} {
 		f.Add(text)
 	}
 	f.Fuzz(func(t *testing.T, text string) {

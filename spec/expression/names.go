@@ -14,7 +14,8 @@ var reserved = []string{"and", "or", "not", "in", "true", "false", "nil", "let",
 // Identifier returns how an expression writes the name of a column: with _ for each blank.
 func Identifier(name string) string { return strings.ReplaceAll(name, " ", "_") }
 
-// Reserved says what an expression would take the name for instead of a column: "a word", "a function", or "" if nothing.
+// Reserved says what an expression would take the name for instead of a column: "a word", "a function", or "" if
+// nothing.
 func Reserved(name string) string {
 	switch {
 	case slices.Contains(reserved, Identifier(name)):
@@ -42,7 +43,7 @@ func Nearest(name string, candidates []string) string {
 		return []rune(strings.ToLower(strings.NewReplacer(" ", "", "_", "", "-", "").Replace(s)))
 	}
 	a := plain(name)
-	if len(a) > 100 {
+	if len(a) > 100 || len(candidates) > 300 { // a bound on the work; people choose from fewer
 		return ""
 	}
 	best, least := "", len(a)/3+1

@@ -71,7 +71,7 @@ func IncompleteGamma(a, x float64) (lower, upper float64) {
 	if x < a+1 {
 		term, sum := 1.0, 1.0
 		for k := 1.0; k < iterations && term > float64(sum*1e-17); k++ {
-			term *= x / (a + k)
+			term = float64(term * (x / (a + k)))
 			sum += term
 		}
 		lower = min(float64(factor*sum)/a, 1)

@@ -23,7 +23,7 @@ func expHalfSquare(x float64) float64 {
 	if x > 39 {
 		return 0
 	}
-	head := math.Trunc(x*16) / 16
+	head := float64(math.Trunc(x*16) / 16)
 	rest := float64((x - head) * (x + head))
 	return float64(Exp(-float64(head*head)/2) * Exp(-rest/2))
 }
@@ -66,7 +66,7 @@ func NormalCDF(x float64) float64 {
 		const root = 0.56418958354775628694807945156077 // 1/√π
 		erfc = (root - float64(inverse*top)/bottom) / y
 	}
-	tail := float64(erfc*expHalfSquare(math.Abs(x))) / 2
+	tail := float64(float64(erfc*expHalfSquare(math.Abs(x))) / 2)
 	if x < 0 {
 		return tail
 	}

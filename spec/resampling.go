@@ -82,7 +82,7 @@ func (r *reader) resampling(f field) *resamplingFields {
 	if f, given := m.has("resamples"); given {
 		s.resamplesGiven = true
 		s.resamplesAt = f.at
-		if is, _ := r.scalarIs(f, "auto"); is {
+		if f.is("auto") {
 			r.wrongAt(f.at, `resamples "auto" is not available in this version`, "write a whole number, as in 20000")
 		} else if n, ok := r.whole(f, leastResamples, mostResamples); ok {
 			s.resamples = int(n)

@@ -36,6 +36,9 @@ func (r *reader) scalar(f field) (string, bool) {
 	return "", false
 }
 
+// is says whether the value is the word.
+func (f field) is(word string) bool { return f.node.Kind == scalarNode && f.node.Value == word }
+
 // text returns a text, of one or several lines.
 func (r *reader) text(f field) (string, bool) {
 	value, ok := r.scalar(f)

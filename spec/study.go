@@ -134,27 +134,17 @@ func (r *reader) studyID(f field) string {
 }
 
 func (r *reader) seed(f field) {
-	if text, ok := r.scalarIs(f, "derived"); ok && text {
+	if f.is("derived") {
 		r.plan.Seed.Derived = true // the value follows when the whole plan is known to be right
 		return
 	}
 	const mostSeed = 1<<64 - 1
-	if isNull(f.node) || !looksLikeNumber(f.node.Value) && f.node.Kind == scalarNode {
+	if f.node.Kind == scalarNode && !strings.ContainsAny(f.node.Value, "0123456789") {
 		r.choice(f, []string{"a whole number", "derived"})
 		return
 	}
 	r.plan.Seed.Value, _ = r.whole(f, 0, mostSeed)
 }
-
-// scalarIs says whether a value is the word.
-func (r *reader) scalarIs(f field, word string) (is, ok bool) {
-	if f.node.Kind != scalarNode {
-		return false, false
-	}
-	return f.node.Value == word, true
-}
-
-func looksLikeNumber(text string) bool { return strings.ContainsAny(text, "0123456789") }
 
 var plainConfidence = regexp.MustCompile(`^0\.[0-9]{1,20}$`)
 

@@ -58,8 +58,15 @@ func (r *reader) syntax(err error) {
 		line, _ = strconv.Atoi(place[len("line "):])
 		problem = rest
 	}
-	fix := "look at the indentation, the colons and the quotation marks of this line and the one above"
 	for _, known := range []struct{ contains, problem, fix string }{
+		{"block sequence entries are not allowed", "an entry of a list begins where none can be",
+			"begin each entry with - on a line of its own; put text that begins with - between quotation marks"},
+		{"mapping keys are not allowed", "the sign ? stands where no key can be",
+			"put text that begins with ? between quotation marks"},
+		{"comment or line break", "text follows | or > on the same line",
+			"write it below, indented; put text that begins with such a sign between quotation marks"},
+		{"document indicator", "a line --- or ... stands within a text or a list", "take it out"},
+		{"unexpected ':'", "a colon stands within a text", "put text that holds a colon between quotation marks"},
 		{"cannot start any token", "a character stands where no text can begin",
 			"indent with blanks, not with tabs, and put text that begins with a sign between quotation marks"},
 		{"mapping values are not allowed", "a colon stands where no key can be",
@@ -77,30 +84,34 @@ func (r *reader) syntax(err error) {
 				"put text with brackets or commas between quotation marks"},
 		{"node content", "a value or a key is missing", "look at the brackets and commas of this line"},
 		{"<document start>", "text follows after the end of the plan", "indent it like the keys above, or take it out"},
-		{"escape character", `a backslash between " and " is not understood`, `write \\ for a backslash, or put the text ` +
+		{"escape c", `a backslash between " and " is not understood`, `write \\ for a backslash, or put the text ` +
+			"between ' and '"},
+		{"hexdecimal number", `a backslash between " and " is not understood`, `write \\ for a backslash, or put the text ` +
 			"between ' and '"},
 		{"unknown anchor", "the sign * begins a reference", "put text that begins with * between quotation marks"},
 		{"alphabetic or numeric", "the sign & or * names a reference",
 			"put text that begins with it between quotation marks"},
 		{"exceeded max depth", "lists and keys are nested too deeply", "follow the plan language, which needs few levels"},
+		{"URI escaped", "the sign ! begins a tag", "put text that begins with ! between quotation marks"},
 		{"expected '>'", "the sign ! begins a tag", "put text that begins with ! between quotation marks"},
 		{"tag", "the sign ! begins a tag", "put text that begins with ! between quotation marks"},
-		{"%", "a line that begins with % is not understood", "take it out"},
 		{"incompatible YAML", "a line that begins with % asks for another version of YAML", "take it out"},
+		{"directive", "a line that begins with % is not understood", "take it out"},
+		{"", "the layout is not understood here", "look at the indentation, the colons and the quotation marks of this " +
+			"line and the one above"},
 	} {
 		if strings.Contains(problem, known.contains) {
-			problem, fix = known.problem, known.fix
-			break
+			if len(r.plan.Text) <= maxSearched {
+				line = r.firstWrongLine()
+			}
+			last := len(r.lines)
+			if last > 1 && r.lines[last-1] == "" {
+				last--
+			}
+			r.wrongAt(Position{Line: max(1, min(line, last))}, known.problem, known.fix)
+			return
 		}
 	}
-	last := len(r.lines)
-	if last > 1 && r.lines[last-1] == "" {
-		last--
-	}
-	if len(r.plan.Text) <= maxSearched {
-		line = r.firstWrongLine()
-	}
-	r.wrongAt(Position{Line: max(1, min(line, last))}, problem, fix)
 }
 
 // Bounds of firstWrongLine, in bytes: of a plan in which it searches, and of all that it reads again.

@@ -8,6 +8,8 @@ package statistic
 
 import (
 	"errors"
+	"math"
+	"strings"
 
 	"lotproof/spec"
 )
@@ -20,6 +22,9 @@ var (
 	ErrZeroDivisor = errors.New("division by zero")
 	ErrNotFinite   = errors.New("the value is too large to be represented")
 )
+
+// Reasons lists the reasons, in the order in which records count them.
+var Reasons = []error{ErrTooFew, ErrNoSpread, ErrNotPositive, ErrZeroDivisor, ErrNotFinite}
 
 // An Estimator computes one statistic, with its parameters bound. It holds no state that changes: one Estimator serves
 // several goroutines at once.
@@ -55,9 +60,51 @@ type Definition struct {
 	Where       string           // what the symbols mean
 	Assumptions string           // one or two sentences
 	Sources     []string         // literature, as printed in the reference list
-	Positive    bool             // whether a ratio of two groups makes sense only if values are positive
+	Bounds      *[2]float64      // least and most possible value; nil: any number
 	// Unit returns the unit of the statistic from the units of its columns.
 	Unit func(units []string) string
 	// New binds the parameters; with holds one setting for each of Parameters, checked by spec.
 	New func(with []spec.Setting) Estimator
+}
+
+// Space returns the least and the most possible value of the statistic, infinite where there is none.
+func (d *Definition) Space() (least, most float64) {
+	if d.Bounds == nil {
+		return math.Inf(-1), math.Inf(1)
+	}
+	return d.Bounds[0], d.Bounds[1]
+}
+
+var (
+	nonNegative      = &[2]float64{0, math.Inf(1)}
+	fraction         = &[2]float64{0, 1}
+	correlationRange = &[2]float64{-1, 1}
+)
+
+// sameUnit, squaredUnit and noUnit are the usual rules for the unit of a statistic; no unit is written as empty text.
+func sameUnit(units []string) string {
+	if len(units) == 0 {
+		return ""
+	}
+	return units[0]
+}
+
+func squaredUnit(units []string) string {
+	if units[0] == "" {
+		return ""
+	}
+	if strings.ContainsAny(units[0], " /*·") {
+		return "(" + units[0] + ")²"
+	}
+	return units[0] + "²"
+}
+
+func noUnit([]string) string { return "" }
+
+// number returns a value, or the reason why it cannot be represented.
+func number(v float64) (float64, error) {
+	if math.IsNaN(v) || math.IsInf(v, 0) {
+		return 0, ErrNotFinite
+	}
+	return v, nil
 }

@@ -160,7 +160,7 @@ func (s *Study) report(w *bench, j int, v *values) record.Statistic {
 	}
 	out.Advisories = advisory.Check(&advisory.Input{
 		Plan: p, Table: a.selection.Table, Selection: a.selection, Record: &out, Values: good.Sorted(),
-		PivotsFailed: failedPivots(v), Cut: cut, Columns: a.columns, Independent: a.independent(),
+		Contribution: w.contributions(j, a), PivotsFailed: failedPivots(v), Cut: cut, Columns: a.columns, Independent: a.independent(),
 		UnitOf: a.design.UnitOf(0), Partly: a.design.Partly,
 	})
 	accept(p, s.Plan.Rounding, &out)

@@ -2,6 +2,7 @@ package runner
 
 import (
 	"math"
+	"slices"
 
 	"lotproof/runner/draw"
 	"lotproof/runner/statistic"
@@ -46,6 +47,24 @@ func (w *bench) influenceError(j int, a *analysis, estimator statistic.Influence
 	}
 	sums := w.perUnit[:units]
 	clear(sums)
+	drawn := w.taken.Unit[0]
+	err := w.eachInfluence(j, a, estimator, func(at int32, psi float64) { sums[drawn[at]] += psi })
+	if err != nil {
+		return 0, err
+	}
+	variance := 0.0
+	for h := range len(w.design.Parts()) - 1 {
+		part := sums[w.design.Parts()[h]:w.design.Parts()[h+1]]
+		if m := float64(len(part)); m > 1 {
+			variance += float64(m / (m - 1) * squares(part))
+		}
+	}
+	return finite(math.Sqrt(variance))
+}
+
+// eachInfluence calls do with the place of each row in the resample taken last and its influence value divided by the
+// number of rows, of both groups of a comparison by the chain rule.
+func (w *bench) eachInfluence(j int, a *analysis, estimator statistic.Influencer, do func(at int32, psi float64)) error {
 	weights := [2]float64{1, 0}
 	var of [2]float64
 	sides := 1
@@ -55,7 +74,7 @@ func (w *bench) influenceError(j int, a *analysis, estimator statistic.Influence
 	for side := range sides {
 		var err error
 		if of[side], err = estimator.Estimate(w.of[j][side].sample); err != nil {
-			return 0, err
+			return err
 		}
 	}
 	if sides == 2 {
@@ -72,22 +91,40 @@ func (w *bench) influenceError(j int, a *analysis, estimator statistic.Influence
 		}
 		out := w.influence[:n]
 		if err := estimator.Influence(v.sample, of[side], out); err != nil {
-			return 0, err
+			return err
 		}
 		scale := weights[side] / float64(n)
-		drawn := w.taken.Unit[0]
 		for i, l := range out {
-			sums[drawn[v.place(i)]] += float64(l * scale)
+			do(v.place(i), float64(l*scale))
 		}
 	}
-	variance := 0.0
-	for h := range len(w.design.Parts()) - 1 {
-		part := sums[w.design.Parts()[h]:w.design.Parts()[h+1]]
-		if m := float64(len(part)); m > 1 {
-			variance += float64(m / (m - 1) * squares(part))
+	return nil
+}
+
+// contributions returns what each row of the design contributes to the statistic on the whole sample, which must be the
+// resample taken last: its influence value, or, for the quantiles, which have none, the observation or its distance from
+// the median. It is nil for other statistics.
+func (w *bench) contributions(j int, a *analysis) []float64 {
+	out := make([]float64, w.design.N())
+	if estimator, ok := a.estimator.(statistic.Influencer); ok {
+		if w.eachInfluence(j, a, estimator, func(at int32, psi float64) { out[w.taken.Rows[at]] = psi }) != nil {
+			return nil
+		}
+		return out
+	}
+	if len(a.columns) != 1 {
+		return nil
+	}
+	copy(out, a.columns[0])
+	if a.definition.Bounds != nil { // a measure of spread
+		sorted := slices.Clone(out)
+		slices.Sort(sorted)
+		centre := sorted[len(sorted)/2]
+		for i, v := range out {
+			out[i] = math.Abs(v - centre)
 		}
 	}
-	return finite(math.Sqrt(variance))
+	return out
 }
 
 func (w *bench) ownError(j int, a *analysis, estimator statistic.StandardErrorer) (float64, error) {

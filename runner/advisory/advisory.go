@@ -45,6 +45,7 @@ type Input struct {
 	Table        *source.Table
 	Selection    *source.Selection
 	Columns      [][]float64       // the columns of the statistic on the used rows
+	Contribution []float64         // what each used row contributes to the statistic, on any scale; nil: not known
 	UnitOf       []int32           // outermost resampling unit of each used row
 	Independent  bool              // every outermost unit is a single row
 	Partly       bool              // some, not all, units span both groups of a comparison
@@ -55,7 +56,7 @@ type Input struct {
 }
 
 var registry = []*Definition{
-	&fewUnits, &quantileOutOfReach, &pseudoReplication, &spreadFromFewUnits, &skewedMean, &narrowInterval, &oneUnitStratum,
+	&fewUnits, &quantileOutOfReach, &pseudoReplication, &spreadFromFewUnits, &skewedMean, &narrowInterval, &smallStratum,
 	&failedResamples, &pivotsWithoutError, &tiedValues, &unstableCorrection, &beyondRange, &partlyPaired, &seedMargin,
 }
 
@@ -108,6 +109,11 @@ func (in *Input) resampled() bool {
 // asks says whether the plan asks for one of the methods.
 func (in *Input) asks(methods ...string) bool {
 	return slices.ContainsFunc(in.Plan.Intervals, func(name string) bool { return slices.Contains(methods, name) })
+}
+
+// decides says whether the interval that carries the verdict, the first, is one of the methods.
+func (in *Input) decides(methods ...string) bool {
+	return slices.Contains(methods, in.Plan.Intervals[0])
 }
 
 // units returns the number of outermost units, of the smaller group in a comparison.

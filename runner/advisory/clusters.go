@@ -15,12 +15,13 @@ func parse(text string) (float64, error) { return strconv.ParseFloat(text, 64) }
 var pseudoReplication = Definition{
 	Code: "pseudo-replication",
 	Summary: "Rows that belong together are drawn as if they were independent: for every category or text column that groups whole resampling " +
-		"units and is neither a stratum nor part of the comparison, the intraclass correlation of the unit means. Above 0.05 with a design effect " +
-		"above 1.2 and P < 0.01 in the analysis of variance it is a stop with 5 groups or more, a caution with fewer.",
+		"units and is neither a stratum nor part of the comparison, the intraclass correlation of what the units contribute to the statistic: " +
+		"their influence values, or the observations where a quantile has none. Above 0.05 with a design effect above 1.2 and P < 0.01 in the " +
+		"analysis of variance it is a stop with 5 groups or more, a caution with fewer. Not checked for a Spearman correlation.",
 	Action: "Name the group as the resampling unit, or draw within its levels as strata if they are all there is.",
 	Source: "Design effect 1 + (m−1)·ICC: Kish L. Survey Sampling. Wiley 1965, section 5.4 (cited from memory); thresholds of this program",
 	check: func(in *Input) *finding {
-		if len(in.Columns) == 0 || !in.resampled() && !in.asks("t", "chi-square", "Clopper-Pearson", "order statistic") {
+		if in.Contribution == nil {
 			return nil
 		}
 		var gravest *finding
@@ -29,11 +30,9 @@ var pseudoReplication = Definition{
 			if c.Derived || c.Type == spec.TypeNumber || in.accounted(c.Name) {
 				continue
 			}
-			for _, values := range in.Columns {
-				f := in.clustered(c.Name, c.Texts, values)
-				if f != nil && (gravest == nil || f.severity == Stop && gravest.severity != Stop) {
-					gravest = f
-				}
+			f := in.clustered(c.Name, c.Texts)
+			if f != nil && (gravest == nil || f.severity == Stop && gravest.severity != Stop) {
+				gravest = f
 			}
 		}
 		return gravest
@@ -53,7 +52,7 @@ func (in *Input) accounted(name string) bool {
 
 // clustered looks at one grouping column. The values compared are means over outermost units, taken as deviations from
 // the mean of their stratum and group of comparison, so that what the design already separates does not count.
-func (in *Input) clustered(name string, texts []string, values []float64) *finding {
+func (in *Input) clustered(name string, texts []string) *finding {
 	units := 0
 	for _, u := range in.UnitOf {
 		units = max(units, int(u)+1)
@@ -68,7 +67,7 @@ func (in *Input) clustered(name string, texts []string, values []float64) *findi
 			return nil // a unit reaches over several groups: the column lies within units, not around them
 		}
 		known[u], group[u] = true, texts[row]
-		sum[u] += values[i]
+		sum[u] += in.Contribution[i]
 		count[u]++
 		class[u] = in.class(i, row)
 	}
@@ -122,13 +121,17 @@ func (in *Input) clustered(name string, texts []string, values []float64) *findi
 	if icc <= 0.05 || effect <= 1.2 || p >= 0.01 {
 		return nil
 	}
+	what := "Units"
+	if in.Independent {
+		what = "Rows"
+	}
 	f := &finding{severity: Stop, evidence: []record.Value{value("intraclass correlation", icc), value("design effect", effect),
 		value("groups", k), value("effective units", all/effect), value("P", p)},
-		text: fmt.Sprintf("Units inside %q resemble each other (intraclass correlation %.2f) but are drawn as independent. The effective number of units is about %.0f, not %.0f.",
-			name, icc, all/effect, all)}
+		text: fmt.Sprintf("%s inside %q resemble each other (intraclass correlation %.2f) but are drawn as independent. The effective number is about %.0f, not %.0f.",
+			what, name, icc, all/effect, all)}
 	if k < 5 {
 		f.severity = Caution
-		f.text = fmt.Sprintf("Levels of %q differ more than units within them (intraclass correlation %.2f); the draw takes no account of it.", name, icc)
+		f.text = fmt.Sprintf("The levels of %q differ more than what lies within them (intraclass correlation %.2f); the draw takes no account of it.", name, icc)
 	}
 	return f
 }

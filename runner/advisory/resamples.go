@@ -67,9 +67,12 @@ var tiedValues = Definition{
 		if !in.resampled() || len(in.Values) == 0 {
 			return nil
 		}
+		// Values that differ by rounding alone count as one.
+		last := len(in.Values) - 1
+		near := 1e-10 * (in.Values[last] - in.Values[0])
 		distinct, commonest, run := 0, 0, 0
 		for i, v := range in.Values {
-			if i == 0 || v != in.Values[i-1] {
+			if i == 0 || v-in.Values[i-1] > near {
 				distinct++
 				run = 0
 			}
@@ -189,6 +192,9 @@ func Margin(s *record.Statistic) []record.Advisory {
 				continue
 			}
 			distance := math.Abs(*a.Bound - limit)
+			if distance <= 1e-12*math.Abs(limit) {
+				distance = 0 // equal but for the rounding of binary arithmetic
+			}
 			if distance >= 3**e {
 				continue
 			}
@@ -198,8 +204,12 @@ func Margin(s *record.Statistic) []record.Advisory {
 				ratio := 3 * *e / distance
 				needed := math.Ceil(float64(s.Resamples) * float64(ratio*ratio))
 				evidence = append(evidence, value("resamples needed", needed))
-				text = fmt.Sprintf("The bound lies %.1f Monte-Carlo errors from the criterion; another seed could reverse the verdict. About %.0f resamples are needed.",
-					distance / *e, needed)
+				text = fmt.Sprintf("The bound lies %.1f Monte-Carlo errors from the criterion; another seed could reverse the verdict. ", distance / *e)
+				if needed > 10_000_000 {
+					text += "No number of resamples up to ten million will do."
+				} else {
+					text += fmt.Sprintf("About %.0f resamples are needed.", needed)
+				}
 			}
 			return []record.Advisory{seedMargin.advisory(&finding{severity: Caution, text: text, evidence: evidence})}
 		}

@@ -93,7 +93,7 @@ var spreadFromFewUnits = Definition{
 		n := in.units()
 		f := &finding{severity: Caution, evidence: []record.Value{value("units", float64(n))}}
 		f.text = fmt.Sprintf("Resampling bounds of a spread are too low on the upper side, the more so the longer the tails; there are %d units.", n)
-		if n < 15 && in.asks("percentile", "basic") {
+		if n < 15 && in.decides("percentile", "basic") {
 			f.severity = Stop
 		} else if n >= 60 {
 			f.text = "Resampling bounds of a spread depend on the tails of the distribution, which a sample hardly shows; this caution stands at every size."
@@ -109,7 +109,7 @@ var narrowInterval = Definition{
 	Action: "Use the studentized method, or let the companion decide.",
 	Source: "Hesterberg TC. What teachers should know about the bootstrap. The American Statistician 69 (2015) 371–386; the factor is arithmetic",
 	check: func(in *Input) *finding {
-		if !in.asks("percentile", "basic", "normal", "bca") || !slices.Contains([]string{"mean", "trimmed mean", "geometric mean"}, in.Plan.Name) {
+		if !in.decides("percentile", "basic", "normal", "bca") || !slices.Contains([]string{"mean", "trimmed mean", "geometric mean"}, in.Plan.Name) {
 			return nil
 		}
 		n := float64(in.units())
@@ -175,9 +175,9 @@ var skewedMean = Definition{
 	},
 }
 
-var oneUnitStratum = Definition{
-	Code:    "one-unit stratum",
-	Summary: "A stratum with a single unit adds no spread to the resamples (stop); one with fewer than 10 makes them too narrow by √((m−1)/m) (note).",
+var smallStratum = Definition{
+	Code:    "small stratum",
+	Summary: "A stratum with a single unit adds no spread to the resamples (stop); one with m units makes them too narrow by √((m−1)/m): fewer than 5 is a caution, fewer than 10 a note.",
 	Action:  "Join strata by a rule in the plan, or take more units in each.",
 	Source:  "Rao JNK, Wu CFJ. Resampling inference with complex survey data. Journal of the American Statistical Association 83 (1988) 231–241; the factor is arithmetic",
 	check: func(in *Input) *finding {
@@ -197,7 +197,11 @@ var oneUnitStratum = Definition{
 			return &finding{severity: Stop, evidence: evidence,
 				text: fmt.Sprintf("Stratum %s has one unit and contributes no uncertainty.", strconv.Quote(least.Name))}
 		case least.Units < 10:
-			return &finding{severity: Note, evidence: evidence,
+			severity := Note
+			if least.Units < 5 {
+				severity = Caution
+			}
+			return &finding{severity: severity, evidence: evidence,
 				text: fmt.Sprintf("The smallest stratum, %s, has %d units; resampling within it understates its spread by the factor %.2f.",
 					strconv.Quote(least.Name), least.Units, math.Sqrt((m-1)/m))}
 		}

@@ -31,16 +31,15 @@ var orderStatistic = Definition{
 		mirror, highTail := lowerPlace(n, new(big.Rat).Sub(big.NewRat(1, 1), in.Sample.P), tail)
 		high := n + 1 - mirror
 		level, _ := new(big.Rat).Sub(big.NewRat(1, 1), tail).Float64()
-		missing := func(side, extreme string, tail float64) Result {
-			r := refuse(fmt.Sprintf("no %s limit at this confidence exists with %d observations: even the %s observation is beyond the "+
-				"quantile with probability %.4f only, and %.4f is needed", side, n, extreme, 1-tail, level))
-			return r
+		missing := func(extreme, side string, tail float64) Result {
+			return refuse(fmt.Sprintf("with %d observations even the %s lies %s the quantile with probability %.4f only; %.4f is needed",
+				n, extreme, side, 1-tail, level))
 		}
 		if in.lower() && low < 1 {
-			return missing("lower", "smallest", lowTail)
+			return missing("smallest", "below", lowTail)
 		}
 		if in.upper() && mirror < 1 {
-			return missing("upper", "largest", highTail)
+			return missing("largest", "above", highTail)
 		}
 		r := exactly(math.NaN(), math.NaN())
 		r.Attained = 1

@@ -109,5 +109,3 @@ func (p place) at(sorted []float64) float64 {
 
 // rank returns the place as a real number.
 func (p place) rank() float64 { return float64(p.low) + float64(p.num)/float64(p.den) }
-
-

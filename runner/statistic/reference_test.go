@@ -140,6 +140,21 @@ func TestReference(t *testing.T) {
 			"se": math.Sqrt(squares) / float64(len(l)), "a": cubes / (6 * squares * math.Sqrt(squares))}, 0)
 	}
 
+	// The influence values of the trimmed mean are Winsorised deviations times n/(n−2g), so their sum of squares gives the
+	// Winsorised variance back.
+	checks["chem-wvar0.1"] = func(t *testing.T, c reference.Case) {
+		s := sampleOf(reference.Data(t, c.Data).Numbers(c.Columns[0]))
+		e := bind(t, "trimmed mean", "0.1").(Influencer)
+		l := make([]float64, s.N())
+		must(t, e.Influence(s, estimate(t, e, s), l))
+		n, g := float64(s.N()), math.Floor(float64(s.N())/10)
+		squares := 0.0
+		for _, v := range l {
+			squares += v * v
+		}
+		c.Compare(t, reference.Figures{reference.Value: squares * (n - 2*g) / n * (n - 2*g) / n / (n - 1)}, 0)
+	}
+
 	// The weights of Maritz and Jarrett are the exact bootstrap law of the median for odd n: its standard error is the
 	// one of the exact law. The tolerance of the case, 1e-12, is that of the incomplete beta function too.
 	for _, id := range []string{"mouse-treatment", "mouse-control", "rivers"} {

@@ -33,21 +33,24 @@ func (repeatabilityOf) Estimate(s *Sample) (float64, error) {
 	return number(math.Sqrt(squares / df))
 }
 
-// within returns the sum of squares within groups and its degrees of freedom. The scratch holds, for each group, number
-// and mean.
+// within returns the sum of squares within groups and its degrees of freedom. Means are taken about the first reading of
+// each group, so that equal readings give exactly 0. The scratch holds, for each group, number, mean and first reading.
 func within(s *Sample) (squares, df float64) {
 	x := s.Column(0)
 	codes, groups := s.Groups()
-	work := s.Scratch(2 * groups)
-	count, mean := work[:groups], work[groups:]
+	work := s.Scratch(3 * groups)
+	count, mean, first := work[:groups], work[groups:2*groups], work[2*groups:]
 	clear(work)
 	for i, g := range codes {
+		if count[g] == 0 {
+			first[g] = x[i]
+		}
 		count[g]++
-		mean[g] += x[i]
+		mean[g] += x[i] - first[g]
 	}
 	for g, n := range count {
 		if n > 0 {
-			mean[g] /= n
+			mean[g] = first[g] + mean[g]/n
 			df += n - 1
 		}
 	}
@@ -66,8 +69,8 @@ func (repeatabilityOf) Influence(s *Sample, value float64, out []float64) error 
 	}
 	_, df := within(s)
 	codes, groups := s.Groups()
-	work := s.Scratch(2 * groups) // still holds what within left there
-	count, mean := work[:groups], work[groups:]
+	work := s.Scratch(3 * groups) // still holds what within left there
+	count, mean := work[:groups], work[groups:2*groups]
 	scale := float64(s.N()) / df
 	square := float64(value * value)
 	for i, v := range s.Column(0) {

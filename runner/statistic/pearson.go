@@ -33,6 +33,9 @@ func correlation(x, y []float64) (float64, error) {
 	if m.xx == 0 || m.yy == 0 {
 		return 0, ErrNoSpread
 	}
+	if math.IsInf(m.xx, 1) || math.IsInf(m.yy, 1) {
+		return 0, ErrNotFinite // else anything over infinity would pass for 0
+	}
 	return number(min(max(m.xy/float64(math.Sqrt(m.xx)*math.Sqrt(m.yy)), -1), 1))
 }
 

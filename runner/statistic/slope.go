@@ -1,6 +1,10 @@
 package statistic
 
-import "lotproof/spec"
+import (
+	"math"
+
+	"lotproof/spec"
+)
 
 var slope = Definition{
 	Name:        "slope",
@@ -38,6 +42,9 @@ func (l lineOf) Estimate(s *Sample) (float64, error) {
 	m := moments(s.Column(0), s.Column(1))
 	if m.xx == 0 {
 		return 0, ErrNoSpread
+	}
+	if math.IsInf(m.xx, 1) {
+		return 0, ErrNotFinite // else the slope would pass for 0
 	}
 	b := m.xy / m.xx
 	if l.intercept {

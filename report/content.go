@@ -1,0 +1,237 @@
+// Package report writes what a run found: the results workbook, the method appendix, and the short texts of the command
+// line. Each is a pure function of the record and the rows that were read.
+//
+// What is said is decided once, here and in number.go, wording.go and methods.go: digits, units, sentences, order. The
+// writers only set it out. One file imports the workbook library (xlsx.go), and files that begin with pdf the PDF library.
+package report
+
+import (
+	"fmt"
+	"strings"
+
+	"lotproof/runner/record"
+	"lotproof/spec"
+)
+
+// confidenceText returns a confidence as a percentage, without binary rounding: 0.95 becomes 95 %.
+func confidenceText(level string) string {
+	whole, fraction, _ := strings.Cut(level, ".")
+	if whole != "0" || len(fraction) == 0 || strings.ContainsAny(level, "eE") {
+		return level
+	}
+	for len(fraction) < 2 {
+		fraction += "0"
+	}
+	percent := strings.TrimLeft(fraction[:2], "0")
+	if percent == "" {
+		percent = "0"
+	}
+	if rest := strings.TrimRight(fraction[2:], "0"); rest != "" {
+		percent += "." + rest
+	}
+	return percent + " %"
+}
+
+// boundText names the limits of an interval in words: "lower 95 % confidence bound".
+func boundText(bound spec.Bound, level string) string {
+	if bound == spec.TwoSided {
+		return fmt.Sprintf("two-sided %s confidence interval", confidenceText(level))
+	}
+	return fmt.Sprintf("%s %s confidence bound", bound, confidenceText(level))
+}
+
+// criterionText returns a criterion in words with its unit: "at least 1.20 N/15mm".
+func criterionText(s *record.Statistic, a *record.Accept) string {
+	text := "at least "
+	if a.Criterion == atMost {
+		text = "at most "
+	}
+	return withUnit(text+minus(a.Limit), s.Unit)
+}
+
+// decisionSentence says what was compared with what, and the verdict.
+func decisionSentence(r *record.Results, s *record.Statistic, a *record.Accept) string {
+	side := "lower"
+	if a.Criterion == atMost {
+		side = "upper"
+	}
+	name := fmt.Sprintf("the %s %s confidence bound", side, confidenceText(a.Confidence))
+	if i := decidingInterval(s); i != nil && i.Bound == spec.TwoSided || i == nil && twoSided(s) {
+		name = fmt.Sprintf("the %s limit of the two-sided %s confidence interval", side, confidenceText(a.Confidence))
+	}
+	if a.Bound == nil {
+		return fmt.Sprintf("%s: %s carries no verdict, %s; the criterion is %s: %s.", s.Label, name, a.Why, criterionText(s, a),
+			a.Verdict)
+	}
+	bound := withUnit(boundFigure(s, a), s.Unit)
+	return fmt.Sprintf("%s: %s is %s (%s); the criterion is %s: %s (%s).", s.Label, name, bound, a.Method, criterionText(s, a),
+		a.Verdict, comparison(r, a))
+}
+
+func twoSided(s *record.Statistic) bool {
+	return len(s.Intervals) > 0 && s.Intervals[0].Bound == spec.TwoSided
+}
+
+// decidingInterval returns the interval that carries the verdict, or nil.
+func decidingInterval(s *record.Statistic) *record.Interval {
+	for i := range s.Intervals {
+		if s.Intervals[i].Decides {
+			return &s.Intervals[i]
+		}
+	}
+	return nil
+}
+
+// comparison names the rule of one comparison.
+func comparison(r *record.Results, a *record.Accept) string {
+	rule := r.Plan.Resolved.Rounding
+	if rule != nil && rule.Rule == "rounded" {
+		return fmt.Sprintf("compared as %s after rounding to the decimals of the criterion, ASTM E29", minus(a.Compared))
+	}
+	return "absolute comparison, ASTM E29"
+}
+
+// comparisonText says how bounds are compared with criteria; empty if there is no criterion.
+func comparisonText(r *record.Results) string {
+	rule := r.Plan.Resolved.Rounding
+	criteria := false
+	for _, s := range r.Statistics {
+		criteria = criteria || len(s.Accept) > 0
+	}
+	if rule == nil || !criteria {
+		return ""
+	}
+	text := "A criterion is met if its bound lies on the right side of the limit; a bound equal to the limit meets it. It is not met if " +
+		"the estimate too lies on the wrong side, and not shown if only the bound does, or if no bound carries a verdict. "
+	if rule.Rule == "rounded" {
+		ties := "to the even digit"
+		if rule.Ties == "away" {
+			ties = "away from zero"
+		}
+		return text + "Bound and estimate are first rounded to the decimals in which the limit is written, halves " + ties +
+			" (rounding method of ASTM E29). The comparison is made in decimal arithmetic."
+	}
+	return text + "Bounds are compared without rounding (absolute method of ASTM E29), in decimal arithmetic with 15 significant digits, " +
+		"which takes off what binary arithmetic adds."
+}
+
+// useText says what an interval is there for.
+func useText(i *record.Interval) string {
+	switch {
+	case i.Reason != "":
+		return "no limit: " + i.Reason
+	case i.Decides && i.Companion:
+		return "companion; carries the verdict"
+	case i.Decides:
+		return "carries the verdict"
+	case i.Companion:
+		return "companion"
+	}
+	return "shown"
+}
+
+// describe says in words what a statistic is: name, parameters, columns, rows and comparison.
+func describe(s *record.Statistic) string {
+	text := s.Statistic
+	if len(s.Of) > 0 {
+		text += " of " + strings.Join(s.Of, " and ")
+	}
+	var with []string
+	for _, p := range s.With {
+		with = append(with, p.Name+" "+p.Text)
+	}
+	if len(with) > 0 {
+		text += " (" + strings.Join(with, ", ") + ")"
+	}
+	text += ", source " + s.Source
+	if s.Where != "" {
+		text += ", rows where " + s.Where
+	}
+	if c := s.Compare; c != nil {
+		switch c.As {
+		case "ratio":
+			text += fmt.Sprintf(", ratio of %s over %s by %s", c.Of[0], c.Of[1], c.By)
+		default:
+			text += fmt.Sprintf(", %s less %s by %s", c.Of[0], c.Of[1], c.By)
+		}
+	}
+	return text
+}
+
+// parameterText lists the intermediate figures of an interval; empty if there are none.
+func parameterText(i *record.Interval) string {
+	var parts []string
+	for _, p := range i.Parameters {
+		parts = append(parts, p.Name+" = "+significant(p.Value, 4))
+	}
+	if i.Attained != nil {
+		parts = append(parts, "attained confidence = "+attainedText(i.Attained))
+	}
+	if len(parts) == 0 {
+		return ""
+	}
+	return fmt.Sprintf("%s, %s: %s.", i.Method, confidenceText(i.Confidence), strings.Join(parts, ", "))
+}
+
+// evidenceText lists the figures behind an advisory; empty if there are none.
+func evidenceText(a *record.Advisory) string {
+	var parts []string
+	for _, p := range a.Evidence {
+		parts = append(parts, p.Name+" "+significant(p.Value, 3))
+	}
+	return strings.Join(parts, ", ")
+}
+
+// axisTitle names the axis of the figure of a statistic.
+func axisTitle(s *record.Statistic) string {
+	return withUnit(s.Statistic, bracketed(s.Unit))
+}
+
+func bracketed(unit string) string {
+	if unit == "" {
+		return ""
+	}
+	return "(" + unit + ")"
+}
+
+// rowsText is the ledger of a source in one line.
+func rowsText(s *record.Source) string {
+	return fmt.Sprintf("%s read = %s used + %s excluded", grouped(int64(s.Rows.Read)), grouped(int64(s.Rows.Used)),
+		grouped(int64(s.Rows.Excluded)))
+}
+
+// seedText says where the seed comes from.
+func seedText(p *spec.Plan) string {
+	if p.Seed.Derived {
+		return fmt.Sprintf("%d, derived from the plan: the first 8 bytes of the SHA-256 of its content without the seed line", p.Seed.Value)
+	}
+	return fmt.Sprintf("%d, chosen in the plan", p.Seed.Value)
+}
+
+// orElse returns the text, or the other one if the text is empty.
+func orElse(text, other string) string {
+	if text == "" {
+		return other
+	}
+	return text
+}
+
+// notStated stands where a plan says nothing.
+const notStated = "not stated"
+
+// markOf is the shape of a verdict or a severity; the word always stands beside it.
+func markOf(word string) string {
+	switch word {
+	case "met":
+		return "●"
+	case "not met":
+		return "■"
+	case "not shown":
+		return "▲"
+	case "stop":
+		return "■"
+	case "caution":
+		return "▲"
+	}
+	return "○"
+}

@@ -7,6 +7,7 @@ package report
 
 import (
 	"fmt"
+	"math/big"
 	"strings"
 
 	"lotproof/runner/record"
@@ -15,21 +16,11 @@ import (
 
 // confidenceText returns a confidence as a percentage, without binary rounding: 0.95 becomes 95 %.
 func confidenceText(level string) string {
-	whole, fraction, _ := strings.Cut(level, ".")
-	if whole != "0" || len(fraction) == 0 || strings.ContainsAny(level, "eE") {
+	p, ok := new(big.Rat).SetString(level)
+	if !ok {
 		return level
 	}
-	for len(fraction) < 2 {
-		fraction += "0"
-	}
-	percent := strings.TrimLeft(fraction[:2], "0")
-	if percent == "" {
-		percent = "0"
-	}
-	if rest := strings.TrimRight(fraction[2:], "0"); rest != "" {
-		percent += "." + rest
-	}
-	return percent + " %"
+	return trimZeros(p.Mul(p, big.NewRat(100, 1)).FloatString(12)) + " %"
 }
 
 // boundText names the limits of an interval in words: "lower 95 % confidence bound".
@@ -49,27 +40,74 @@ func criterionText(s *record.Statistic, a *record.Accept) string {
 	return withUnit(text+minus(a.Limit), s.Unit)
 }
 
-// decisionSentence says what was compared with what, and the verdict.
+// decisionSentence says what was compared with what, the verdict, and for a verdict other than met the reason.
 func decisionSentence(r *record.Results, s *record.Statistic, a *record.Accept) string {
+	name, criterion := verdictBound(r, s, a), criterionText(s, a)
+	head := s.Label + ": the " + name
+	if c := s.Compare; c != nil {
+		head = fmt.Sprintf("%s (%s): the %s", s.Label, comparedText(c), name)
+	}
+	if a.Bound == nil {
+		return fmt.Sprintf("%s carries no verdict (%s); the criterion, %s, is %s.", head, a.Why, criterion, a.Verdict)
+	}
+	text := fmt.Sprintf("%s is %s; the criterion, %s, is %s (%s)", head, withUnit(boundFigure(s, a), s.Unit), criterion, a.Verdict,
+		comparison(r, a))
+	estimate := withUnit(estimateFigure(s), s.Unit)
+	switch a.Verdict {
+	case "not shown":
+		text += fmt.Sprintf(": the estimate, %s, is on its right side, the bound is not", estimate)
+	case "not met":
+		text += fmt.Sprintf(": the estimate, %s, and the bound are both on its wrong side", estimate)
+	}
+	if _, why, companion := strings.Cut(a.Why, byCompanion); companion {
+		text += fmt.Sprintf(". The companion (%s) decided, as the plan says: %s", a.Method, why)
+	}
+	return text + "."
+}
+
+// byCompanion parts the verdict from the reason why the companion decided, in the words of the runner.
+const byCompanion = "; decided by the companion, as the plan says: "
+
+// whyText is the reason of a verdict as a sentence.
+func whyText(a *record.Accept) string {
+	text := strings.Replace(a.Why, byCompanion, ". The companion decided, as the plan says: ", 1)
+	if text == "" {
+		return ""
+	}
+	return strings.ToUpper(text[:1]) + text[1:] + "."
+}
+
+// comparedText names the two groups of a comparison.
+func comparedText(c *record.Compare) string {
+	if c.As == "ratio" {
+		return fmt.Sprintf("ratio, %s over %s", c.Of[0], c.Of[1])
+	}
+	return fmt.Sprintf("difference, %s less %s", c.Of[0], c.Of[1])
+}
+
+// verdictBound names the bound that belongs to a criterion: "lower 95 % confidence bound".
+func verdictBound(r *record.Results, s *record.Statistic, a *record.Accept) string {
 	side := "lower"
 	if a.Criterion == atMost {
 		side = "upper"
 	}
-	name := fmt.Sprintf("the %s %s confidence bound", side, confidenceText(a.Confidence))
-	if i := decidingInterval(s); i != nil && i.Bound == spec.TwoSided || i == nil && twoSided(s) {
-		name = fmt.Sprintf("the %s limit of the two-sided %s confidence interval", side, confidenceText(a.Confidence))
+	if boundOf(r, s) == spec.TwoSided {
+		return fmt.Sprintf("%s limit of the two-sided %s confidence interval", side, confidenceText(a.Confidence))
 	}
-	if a.Bound == nil {
-		return fmt.Sprintf("%s: %s carries no verdict, %s; the criterion is %s: %s.", s.Label, name, a.Why, criterionText(s, a),
-			a.Verdict)
-	}
-	bound := withUnit(boundFigure(s, a), s.Unit)
-	return fmt.Sprintf("%s: %s is %s (%s); the criterion is %s: %s (%s).", s.Label, name, bound, a.Method, criterionText(s, a),
-		a.Verdict, comparison(r, a))
+	return fmt.Sprintf("%s %s confidence bound", side, confidenceText(a.Confidence))
 }
 
-func twoSided(s *record.Statistic) bool {
-	return len(s.Intervals) > 0 && s.Intervals[0].Bound == spec.TwoSided
+// boundOf says which limits the plan asks for.
+func boundOf(r *record.Results, s *record.Statistic) spec.Bound {
+	if i := decidingInterval(s); i != nil {
+		return i.Bound
+	}
+	for _, p := range r.Plan.Resolved.Statistics {
+		if p.ID == s.ID {
+			return p.Bound
+		}
+	}
+	return spec.TwoSided
 }
 
 // decidingInterval returns the interval that carries the verdict, or nil.
@@ -148,12 +186,7 @@ func describe(s *record.Statistic) string {
 		text += ", rows where " + s.Where
 	}
 	if c := s.Compare; c != nil {
-		switch c.As {
-		case "ratio":
-			text += fmt.Sprintf(", ratio of %s over %s by %s", c.Of[0], c.Of[1], c.By)
-		default:
-			text += fmt.Sprintf(", %s less %s by %s", c.Of[0], c.Of[1], c.By)
-		}
+		text += fmt.Sprintf(", %s (%s)", comparedText(c), c.By)
 	}
 	return text
 }
@@ -196,8 +229,8 @@ func bracketed(unit string) string {
 
 // rowsText is the ledger of a source in one line.
 func rowsText(s *record.Source) string {
-	return fmt.Sprintf("%s read = %s used + %s excluded", grouped(int64(s.Rows.Read)), grouped(int64(s.Rows.Used)),
-		grouped(int64(s.Rows.Excluded)))
+	return fmt.Sprintf("%s read = %s used + %s excluded", countText(s.Rows.Read), countText(s.Rows.Used),
+		countText(s.Rows.Excluded))
 }
 
 // seedText says where the seed comes from.
@@ -214,6 +247,12 @@ func orElse(text, other string) string {
 		return other
 	}
 	return text
+}
+
+// runText says which run this is.
+func runText(rec *record.Record) string {
+	return fmt.Sprintf("Run %d of study %s, started %s and finished %s (UTC) on %s.", rec.Run.Number, rec.Results.Plan.Study,
+		rec.Run.Started, rec.Run.Finished, rec.Run.System)
 }
 
 // notStated stands where a plan says nothing.

@@ -8,6 +8,7 @@ import (
 	"lotproof/runner/interval"
 	"lotproof/runner/record"
 	"lotproof/runner/statistic"
+	"lotproof/spec"
 )
 
 // A methodText explains one statistic or interval that was used.
@@ -66,39 +67,69 @@ func resamplingTexts(r *record.Results) []string {
 	return texts
 }
 
-// designText says what is drawn together.
+// designText says what is drawn together, how often, and what comes along.
 func designText(s *record.Statistic) string {
 	d := &s.Design
-	units := d.Unit
+	units, last := d.Unit, len(d.Unit)-1
 	var text string
 	switch {
-	case len(units) == 1 && units[0] == "row":
-		text = "Single rows are drawn with replacement"
-	case len(units) == 1:
-		text = fmt.Sprintf("Whole units, the levels of %s, are drawn with replacement; all rows of a drawn unit come along, so rows of one unit stay together", units[0])
+	case last == 0 && units[0] == spec.Row:
+		text = "The resampling unit is the single row. Rows are drawn with replacement, "
+	case last == 0:
+		text = fmt.Sprintf("The resampling unit is %s. Whole units are drawn with replacement, ", units[0])
 	default:
-		text = "Levels of " + units[0] + " are drawn with replacement"
-		for i, inner := range units[1:] {
-			if inner == "row" {
-				text += "; within each drawn one of " + units[i] + ", rows are drawn with replacement"
-			} else {
-				text += "; within each drawn one of " + units[i] + ", levels of " + inner + " are drawn with replacement"
-			}
+		text = fmt.Sprintf("The outermost resampling unit is %s. Units are drawn with replacement, ", units[0])
+	}
+	text += drawnText(d)
+	for i, inner := range units[1:] {
+		if inner == spec.Row {
+			text += fmt.Sprintf("; within each drawn %s its rows are drawn with replacement, as many as it has", units[i])
+		} else {
+			text += fmt.Sprintf("; within each drawn %s its units of %s are drawn with replacement, as many as it has", units[i], inner)
 		}
 	}
-	text += ", as many as there are"
-	if len(d.By) > 0 {
-		text += ", separately within each level of " + strings.Join(d.By, " and ")
+	if units[last] != spec.Row {
+		text += fmt.Sprintf("; all rows of a drawn %s come along", units[last])
 	}
 	text += "."
 	if c := s.Compare; c != nil {
 		if c.Paired {
-			text += fmt.Sprintf(" Units hold rows of both levels of %s, so both groups are drawn jointly (paired).", c.By)
+			text += fmt.Sprintf(" Units hold rows of both groups (%s %s and %s), so the groups are drawn jointly, as pairs.", c.By, c.Of[0], c.Of[1])
 		} else {
-			text += fmt.Sprintf(" No unit holds rows of both compared levels of %s, so the two groups are drawn separately.", c.By)
+			text += fmt.Sprintf(" No unit holds rows of both groups (%s %s and %s), so each group is drawn by itself.", c.By, c.Of[0], c.Of[1])
 		}
 	}
 	return text
+}
+
+// mostStrata is how many strata are named one by one.
+const mostStrata = 12
+
+// drawnText says how many units are drawn from how many, in each stratum.
+func drawnText(d *record.Design) string {
+	if len(d.Strata) == 1 && d.Strata[0].Name == "" {
+		return fmt.Sprintf("%s from %[1]s", countText(d.Strata[0].Units))
+	}
+	within := strings.Join(d.By, " and ")
+	if within == "" {
+		within = "group"
+	}
+	least, most := d.Strata[0].Units, d.Strata[0].Units
+	var names, parts []string
+	for _, st := range d.Strata {
+		least, most = min(least, st.Units), max(most, st.Units)
+		names = append(names, st.Name)
+		parts = append(parts, fmt.Sprintf("%s %s from %[2]s", st.Name, countText(st.Units)))
+	}
+	switch {
+	case len(parts) > mostStrata && least == most:
+		return fmt.Sprintf("%s from %[1]s within each of %d strata (%s)", countText(least), len(parts), within)
+	case len(parts) > mostStrata:
+		return fmt.Sprintf("as many as there are, %s to %s, within each of %d strata (%s)", countText(least), countText(most), len(parts), within)
+	case least == most:
+		return fmt.Sprintf("%s from %[1]s within each %s (%s)", countText(least), within, strings.Join(names, "; "))
+	}
+	return fmt.Sprintf("within each %s: %s", within, strings.Join(parts, "; "))
 }
 
 // streamTexts explains where the random numbers come from and how far the figures depend on them.
@@ -146,19 +177,36 @@ func references(r *record.Results) []string {
 	return out
 }
 
-// validityTexts says what the figures do not show.
+// validityTexts says what the figures do not show. The disclaimers of the plan stand by themselves.
 func validityTexts(r *record.Results) []string {
 	texts := []string{
-		"An interval from resampling says how the estimate would vary if the study were repeated with units like those observed. It does not " +
-			"cover units, conditions or times that were not sampled, nor mistakes in the data.",
-		"The advisories are those that this version can compute from the sample. That none is given does not show that all is well.",
-		"Each criterion stands alone at its own confidence. The chance that k bounds at 95 % all hold is about 0.95ᵏ if they are independent, " +
-			"and at least 1 − 0.05·k in any case.",
-		"Lotproof judges a criterion, not a product. Decisions on the safety of a device, drug, water or exposure are for the responsible and " +
-			"qualified persons under the regulations that apply.",
+		"An interval says how far the estimate may lie from the true value when units like those observed are taken again and again. It does " +
+			"not cover units, conditions or times that were not sampled, nor mistakes in the data.",
+		"It rests on resampling units that are independent of each other within their stratum. Rows that belong together must lie in one unit.",
+		"The advisories are those that this version computes from the data. That none is given does not show that all is well.",
 	}
-	return append(texts, r.Plan.Resolved.Study.Disclaimers...)
+	criteria := 0
+	for _, s := range r.Statistics {
+		criteria += len(s.Accept)
+	}
+	if criteria > 1 {
+		texts = append(texts, fmt.Sprintf("The %d criteria are judged one by one, each at its own confidence. The confidence that all bounds hold "+
+			"together is lower.", criteria))
+	}
+	if r.Plan.Resolved.Study.Status == "draft" {
+		texts = append(texts, "The plan is a draft: it was not marked as approved before the run.")
+	}
+	for _, m := range r.Plan.Resolved.Amendments {
+		if m.ResultsSeen {
+			texts = append(texts, fmt.Sprintf("Amendment %d was made after results had been seen.", m.Number))
+		}
+	}
+	return append(texts, notForLotproof)
 }
+
+// notForLotproof is said in every report.
+const notForLotproof = "Lotproof judges a criterion, not a product. Decisions on the safety of a device, drug, water or exposure are for " +
+	"the responsible and qualified persons under the regulations that apply."
 
 // replayTexts says how to check the report.
 func replayTexts(rec *record.Record) []string {
@@ -177,7 +225,7 @@ func signatureText() string {
 
 // figureCaption explains the figure of a statistic.
 func figureCaption(s *record.Statistic) string {
-	text := fmt.Sprintf("The %s resample values of “%s”, with the estimate", grouped(int64(s.Resamples-s.FailedResamples)), s.Label)
+	text := fmt.Sprintf("The %s resample values of “%s”, with the estimate", countText(s.Resamples-s.FailedResamples), s.Label)
 	if i := decidingInterval(s); i != nil {
 		text += " and the limits of the " + i.Method + " interval that carries the verdict"
 	} else if len(s.Intervals) > 0 && s.Intervals[0].Reason == "" {

@@ -354,3 +354,6 @@ func sayStandardError(s *record.Statistic) string                   { return sta
 func sayBias(s *record.Statistic) string                            { return biasFigure(s) }
 func sayPercent(level string) string                                { return confidenceText(level) }
 func sayMonteCarlo(e *float64) string                               { return errorFigure(e) }
+
+// countText writes a whole number with a narrow space between thousands.
+func countText(n int) string { return grouped(int64(n)) }

@@ -195,9 +195,9 @@ func Outline(w io.Writer, r *record.Results) error {
 		entry("label", s.Label)
 		entry("role", s.Role)
 		entry("statistic", describe(s))
-		entry("rows", fmt.Sprintf("%s read = %s used + %s excluded + %s missing + %s outside", grouped(int64(s.Rows.Read)),
-			grouped(int64(s.Rows.Used)), grouped(int64(s.Rows.Excluded)), grouped(int64(s.Rows.Missing)), grouped(int64(s.Rows.Outside))))
-		entry("unit", strings.Join(s.Design.Unit, ", then ")+fmt.Sprintf("; %s outermost units", grouped(int64(s.Design.Units))))
+		entry("rows", fmt.Sprintf("%s read = %s used + %s excluded + %s missing + %s outside", countText(s.Rows.Read),
+			countText(s.Rows.Used), countText(s.Rows.Excluded), countText(s.Rows.Missing), countText(s.Rows.Outside)))
+		entry("unit", strings.Join(s.Design.Unit, ", then ")+fmt.Sprintf("; %s outermost units", countText(s.Design.Units)))
 		if c := s.Compare; c != nil {
 			how := "drawn separately"
 			if c.Paired {
@@ -213,7 +213,7 @@ func Outline(w io.Writer, r *record.Results) error {
 			}
 			entry("units drawn", strings.Join(parts, "; "))
 		}
-		entry("resamples", grouped(int64(q.Resampling.Resamples)))
+		entry("resamples", countText(q.Resampling.Resamples))
 		entry("bound", string(q.Bound))
 		var levels []string
 		for _, c := range q.Confidence {

@@ -1,8 +1,9 @@
 // Package report writes what a run found: the results workbook, the method appendix, and the short texts of the command
 // line. Each is a pure function of the record and the rows that were read.
 //
-// What is said is decided once, here and in number.go, wording.go and methods.go: digits, units, sentences, order. The
-// writers only set it out. One file imports the workbook library (xlsx.go), and files that begin with pdf the PDF library.
+// What is said is decided once, here and in number.go, wording.go and methods.go: digits, units, sentences, order.
+// The writers only set it out. One file imports the workbook library (xlsx.go), and files that begin with pdf the PDF
+// library.
 package report
 
 import (
@@ -50,7 +51,8 @@ func decisionSentence(r *record.Results, s *record.Statistic, a *record.Accept) 
 	if a.Bound == nil {
 		return fmt.Sprintf("%s carries no verdict (%s); the criterion, %s, is %s.", head, a.Why, criterion, a.Verdict)
 	}
-	text := fmt.Sprintf("%s is %s; the criterion, %s, is %s (%s)", head, withUnit(boundFigure(s, a), s.Unit), criterion, a.Verdict,
+	text := fmt.Sprintf("%s is %s; the criterion, %s, is %s (%s)", head, withUnit(boundFigure(s, a), s.Unit),
+		criterion, a.Verdict,
 		comparison(r, a))
 	estimate := withUnit(estimateFigure(s), s.Unit)
 	switch a.Verdict {
@@ -139,7 +141,8 @@ func comparisonText(r *record.Results) string {
 	if rule == nil || !criteria {
 		return ""
 	}
-	text := "A criterion is met if its bound lies on the right side of the limit; a bound equal to the limit meets it. It is not met if " +
+	text := "A criterion is met if its bound lies on the right side of the limit; a bound equal to the limit meets it. " +
+		"It is not met if " +
 		"the estimate too lies on the wrong side, and not shown if only the bound does, or if no bound carries a verdict. "
 	if rule.Rule == "rounded" {
 		ties := "to the even digit"
@@ -149,7 +152,8 @@ func comparisonText(r *record.Results) string {
 		return text + "Bound and estimate are first rounded to the decimals in which the limit is written, halves " + ties +
 			" (rounding method of ASTM E29). The comparison is made in decimal arithmetic."
 	}
-	return text + "Bounds are compared without rounding (absolute method of ASTM E29), in decimal arithmetic with 15 significant digits, " +
+	return text + "Bounds are compared without rounding (absolute method of ASTM E29), in decimal arithmetic with 15 " +
+		"significant digits, " +
 		"which takes off what binary arithmetic adds."
 }
 
@@ -236,7 +240,8 @@ func rowsText(s *record.Source) string {
 // seedText says where the seed comes from.
 func seedText(p *spec.Plan) string {
 	if p.Seed.Derived {
-		return fmt.Sprintf("%d, derived from the plan: the first 8 bytes of the SHA-256 of its content without the seed line", p.Seed.Value)
+		return fmt.Sprintf("%d, derived from the plan: the first 8 bytes of the SHA-256 of its content without the seed "+
+			"line", p.Seed.Value)
 	}
 	return fmt.Sprintf("%d, chosen in the plan", p.Seed.Value)
 }
@@ -251,7 +256,8 @@ func orElse(text, other string) string {
 
 // runText says which run this is.
 func runText(rec *record.Record) string {
-	return fmt.Sprintf("Run %d of study %s, started %s and finished %s (UTC) on %s.", rec.Run.Number, rec.Results.Plan.Study,
+	return fmt.Sprintf("Run %d of study %s, started %s and finished %s (UTC) on %s.", rec.Run.Number,
+		rec.Results.Plan.Study,
 		rec.Run.Started, rec.Run.Finished, rec.Run.System)
 }
 

@@ -85,7 +85,8 @@ func designText(s *record.Statistic) string {
 		if inner == spec.Row {
 			text += fmt.Sprintf("; within each drawn %s its rows are drawn with replacement, as many as it has", units[i])
 		} else {
-			text += fmt.Sprintf("; within each drawn %s its units of %s are drawn with replacement, as many as it has", units[i], inner)
+			text += fmt.Sprintf("; within each drawn %s its units of %s are drawn with replacement, as many as it has",
+				units[i], inner)
 		}
 	}
 	if units[last] != spec.Row {
@@ -94,9 +95,11 @@ func designText(s *record.Statistic) string {
 	text += "."
 	if c := s.Compare; c != nil {
 		if c.Paired {
-			text += fmt.Sprintf(" Units hold rows of both groups (%s %s and %s), so the groups are drawn jointly, as pairs.", c.By, c.Of[0], c.Of[1])
+			text += fmt.Sprintf(" Units hold rows of both groups (%s %s and %s), so the groups are drawn jointly, as pairs.",
+				c.By, c.Of[0], c.Of[1])
 		} else {
-			text += fmt.Sprintf(" No unit holds rows of both groups (%s %s and %s), so each group is drawn by itself.", c.By, c.Of[0], c.Of[1])
+			text += fmt.Sprintf(" No unit holds rows of both groups (%s %s and %s), so each group is drawn by itself.", c.By,
+				c.Of[0], c.Of[1])
 		}
 	}
 	return text
@@ -125,7 +128,8 @@ func drawnText(d *record.Design) string {
 	case len(parts) > mostStrata && least == most:
 		return fmt.Sprintf("%s from %[1]s within each of %d strata (%s)", countText(least), len(parts), within)
 	case len(parts) > mostStrata:
-		return fmt.Sprintf("as many as there are, %s to %s, within each of %d strata (%s)", countText(least), countText(most), len(parts), within)
+		return fmt.Sprintf("as many as there are, %s to %s, within each of %d strata (%s)", countText(least),
+			countText(most), len(parts), within)
 	case least == most:
 		return fmt.Sprintf("%s from %[1]s within each %s (%s)", countText(least), within, strings.Join(names, "; "))
 	}
@@ -135,24 +139,32 @@ func drawnText(d *record.Design) string {
 // streamTexts explains where the random numbers come from and how far the figures depend on them.
 func streamTexts(r *record.Results) []string {
 	return []string{
-		"Each resample has a random stream of its own, addressed by the seed, the resampling design and the number of the resample. " +
-			"Results therefore do not depend on how many processors drew, or on which other statistics the plan holds; statistics on the " +
-			"same rows with the same design share their resamples. Generator: " + r.Program.Generator + " (Blackman and Vigna 2021). Seed: " +
+		"Each resample has a random stream of its own, addressed by the seed, the resampling design and the number of the " +
+			"resample. " +
+			"Results therefore do not depend on how many processors drew, or on which other statistics the plan holds; " +
+			"statistics on the " +
+			"same rows with the same design share their resamples. Generator: " + r.Program.Generator + " (Blackman and Vigna " +
+			"2021). Seed: " +
 			seedText(&r.Plan.Resolved) + ".",
-		"Every simulated limit has a Monte-Carlo standard error: what another seed would change. It is found from the density of the resample " +
-			"values at the limit. No digit is printed whose half unit is below twice this error, except where a digit more is needed to show on " +
+		"Every simulated limit has a Monte-Carlo standard error: what another seed would change. It is found from the " +
+			"density of the resample " +
+			"values at the limit. No digit is printed whose half unit is below twice this error, except where a digit more is " +
+			"needed to show on " +
 			"which side of a criterion a bound lies.",
 	}
 }
 
 // streamSources are the references behind streamTexts.
 var streamSources = []string{
-	"Blackman D, Vigna S. Scrambled linear pseudorandom number generators. ACM Transactions on Mathematical Software 47 (2021) article 36",
-	"Brackett-Rozinsky N, Lemire D. Batched ranged random integer generation. Software: Practice and Experience 55 (2025) 155–169",
+	"Blackman D, Vigna S. Scrambled linear pseudorandom number generators. ACM Transactions on Mathematical Software 47 " +
+		"(2021) article 36",
+	"Brackett-Rozinsky N, Lemire D. Batched ranged random integer generation. Software: Practice and Experience 55 " +
+		"(2025) 155–169",
 }
 
 // comparisonSource is the reference behind comparisonText.
-const comparisonSource = "ASTM E29, Standard Practice for Using Significant Digits in Test Data to Determine Conformance with Specifications"
+const comparisonSource = "ASTM E29, Standard Practice for Using Significant Digits in Test Data to Determine " +
+	"Conformance with Specifications"
 
 // references lists what the report relies on, each once, in the order of first use: only what was used.
 func references(r *record.Results) []string {
@@ -180,17 +192,21 @@ func references(r *record.Results) []string {
 // validityTexts says what the figures do not show. The disclaimers of the plan stand by themselves.
 func validityTexts(r *record.Results) []string {
 	texts := []string{
-		"An interval says how far the estimate may lie from the true value when units like those observed are taken again and again. It does " +
+		"An interval says how far the estimate may lie from the true value when units like those observed are taken again " +
+			"and again. It does " +
 			"not cover units, conditions or times that were not sampled, nor mistakes in the data.",
-		"It rests on resampling units that are independent of each other within their stratum. Rows that belong together must lie in one unit.",
-		"The advisories are those that this version computes from the data. That none is given does not show that all is well.",
+		"It rests on resampling units that are independent of each other within their stratum. Rows that belong together " +
+			"must lie in one unit.",
+		"The advisories are those that this version computes from the data. That none is given does not show that all is " +
+			"well.",
 	}
 	criteria := 0
 	for _, s := range r.Statistics {
 		criteria += len(s.Accept)
 	}
 	if criteria > 1 {
-		texts = append(texts, fmt.Sprintf("The %d criteria are judged one by one, each at its own confidence. The confidence that all bounds hold "+
+		texts = append(texts, fmt.Sprintf("The %d criteria are judged one by one, each at its own confidence. The "+
+			"confidence that all bounds hold "+
 			"together is lower.", criteria))
 	}
 	if r.Plan.Resolved.Study.Status == "draft" {
@@ -205,27 +221,32 @@ func validityTexts(r *record.Results) []string {
 }
 
 // notForLotproof is said in every report.
-const notForLotproof = "Lotproof judges a criterion, not a product. Decisions on the safety of a device, drug, water or exposure are for " +
+const notForLotproof = "Lotproof judges a criterion, not a product. Decisions on the safety of a device, drug, water " +
+	"or exposure are for " +
 	"the responsible and qualified persons under the regulations that apply."
 
 // replayTexts says how to check the report.
 func replayTexts(rec *record.Record) []string {
 	return []string{
-		"To run this study again and compare every figure to the last bit and every file to the last byte, keep the data files beside the plan and " +
+		"To run this study again and compare every figure to the last bit and every file to the last byte, keep the data " +
+			"files beside the plan and " +
 			"give the command: lotproof replay record.json",
-		"The digest of the results is the SHA-256 of their compact JSON. " + "The digest of the plan, " + rec.Results.Plan.SHA256 +
+		"The digest of the results is the SHA-256 of their compact JSON. " + "The digest of the plan, " +
+			"" + rec.Results.Plan.SHA256 +
 			", is over its content: spacing, order of keys and comments do not enter, every value does.",
 	}
 }
 
 // signatureText stands above the signature block.
 func signatureText() string {
-	return "The fields are left blank on purpose. What a signature here means, and who may give it, is for the quality system of the user to say."
+	return "The fields are left blank on purpose. What a signature here means, and who may give it, is for the quality " +
+		"system of the user to say."
 }
 
 // figureCaption explains the figure of a statistic.
 func figureCaption(s *record.Statistic) string {
-	text := fmt.Sprintf("The %s resample values of “%s”, with the estimate", countText(s.Resamples-s.FailedResamples), s.Label)
+	text := fmt.Sprintf("The %s resample values of “%s”, with the estimate", countText(s.Resamples-s.FailedResamples),
+		s.Label)
 	if i := decidingInterval(s); i != nil {
 		text += " and the limits of the " + i.Method + " interval that carries the verdict"
 	} else if len(s.Intervals) > 0 && s.Intervals[0].Reason == "" {

@@ -22,8 +22,8 @@ const (
 	atMost  = "upper_at_most"
 )
 
-// judgedDigits is how many significant digits of a figure the runner compares with a criterion. Printed with all of them,
-// a figure cannot contradict its verdict.
+// judgedDigits is how many significant digits of a figure the runner compares with a criterion. Printed with all of
+// them, a figure cannot contradict its verdict.
 const judgedDigits = 15
 
 // fixedText writes v with a fixed number of decimals and a real minus sign. Figures that would need more than 15 digits
@@ -53,7 +53,8 @@ func withPower(v float64, decimals int) string {
 	return mantissa + "·10" + raised.Replace(strconv.Itoa(n))
 }
 
-var raised = strings.NewReplacer("-", "⁻", "0", "⁰", "1", "¹", "2", "²", "3", "³", "4", "⁴", "5", "⁵", "6", "⁶", "7", "⁷",
+var raised = strings.NewReplacer("-", "⁻", "0", "⁰", "1", "¹", "2", "²", "3", "³", "4", "⁴", "5", "⁵", "6", "⁶",
+	"7", "⁷",
 	"8", "⁸", "9", "⁹")
 
 // exponent returns the power of ten of the first digit of v when written with that many digits; 0 for 0.
@@ -171,8 +172,9 @@ func intervalDecimals(s *record.Statistic, i *record.Interval) int {
 	return decimals
 }
 
-// enough raises the decimals until v, as printed, stands on the side of the criterion that was found. A bound that was
-// not compared as it is, was rounded first to the decimals of the limit; then the printed figure is read in the same way.
+// enough raises the decimals until v, as printed, stands on the side of the criterion that was found. A bound that
+// was not compared as it is, was rounded first to the decimals of the limit; then the printed figure is read in the
+// same way.
 func enough(decimals int, v float64, a *record.Accept, right bool) int {
 	limit, ok := new(big.Rat).SetString(a.Limit)
 	if !ok {
@@ -229,8 +231,8 @@ func roundDecimal(d *big.Rat, places int, ties string) *big.Rat {
 	return away.Sub(away, unit)
 }
 
-// leadingInterval returns the interval that the reader looks at first: the one that carries the verdict, else the first with a
-// limit, else nil.
+// leadingInterval returns the interval that the reader looks at first: the one that carries the verdict, else the
+// first with a limit, else nil.
 func leadingInterval(s *record.Statistic) *record.Interval {
 	var first *record.Interval
 	for k := range s.Intervals {
@@ -258,8 +260,8 @@ func estimateFigure(s *record.Statistic) string {
 	return figureText(s.Estimate, estimateDecimals(s))
 }
 
-// groupFigure writes the estimate in group g of a comparison, without unit. The groups of a ratio have decimals of their
-// own, because their unit is another.
+// groupFigure writes the estimate in group g of a comparison, without unit. The groups of a ratio have decimals of
+// their own, because their unit is another.
 func groupFigure(s *record.Statistic, g int) string {
 	v := s.Compare.Estimates[g]
 	if v == nil {
@@ -304,8 +306,8 @@ func errorFigure(e *float64) string {
 	return fixedText(*e, decimalsFor(*e, 2))
 }
 
-// standardErrorFigure writes the standard error: three significant digits, less if the number of resamples does not support
-// them. The Monte-Carlo error of a standard deviation of B normal values is about SD/√(2B).
+// standardErrorFigure writes the standard error: three significant digits, less if the number of resamples does not
+// support them. The Monte-Carlo error of a standard deviation of B normal values is about SD/√(2B).
 func standardErrorFigure(s *record.Statistic) string {
 	if s.StandardError == nil {
 		return noFigure
@@ -323,8 +325,8 @@ func standardErrorDecimals(s *record.Statistic) int {
 	return max(supported(decimalsFor(v, 3), &e), decimalsFor(v, 1))
 }
 
-// biasFigure writes the bias with the decimals of the standard error, less if the number of resamples does not support them.
-// The Monte-Carlo error of a mean of B values is SD/√B.
+// biasFigure writes the bias with the decimals of the standard error, less if the number of resamples does not
+// support them. The Monte-Carlo error of a mean of B values is SD/√B.
 func biasFigure(s *record.Statistic) string {
 	if s.Bias == nil || s.StandardError == nil {
 		return noFigure

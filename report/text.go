@@ -38,8 +38,8 @@ func wrapped(prefix, text string) string {
 	return b.String()
 }
 
-// Decisions writes what a person wants to know after a run: each criterion with its verdict, what stands in the way, the
-// other figures, and where the files are.
+// Decisions writes what a person wants to know after a run: each criterion with its verdict, what stands in the way,
+// the other figures, and where the files are.
 func Decisions(w io.Writer, rec *record.Record, folder string) error {
 	r := &rec.Results
 	var b bytes.Buffer
@@ -60,13 +60,16 @@ func Decisions(w io.Writer, rec *record.Record, folder string) error {
 			b.WriteString(wrapped(fmt.Sprintf("  %s %-9s ", markOf(a.Verdict), a.Verdict), s.Label))
 			bound := "no bound"
 			if a.Bound != nil {
-				bound = fmt.Sprintf("%s %s confidence bound %s", sideOf(a), confidenceText(a.Confidence), withUnit(boundFigure(s, a), s.Unit))
+				bound = fmt.Sprintf("%s %s confidence bound %s", sideOf(a), confidenceText(a.Confidence),
+					withUnit(boundFigure(s, a), s.Unit))
 				if i := decidingInterval(s); i != nil && i.Bound == spec.TwoSided {
-					bound = fmt.Sprintf("%s limit %s, two-sided %s", sideOf(a), withUnit(boundFigure(s, a), s.Unit), confidenceText(a.Confidence))
+					bound = fmt.Sprintf("%s limit %s, two-sided %s", sideOf(a), withUnit(boundFigure(s, a), s.Unit),
+						confidenceText(a.Confidence))
 				}
 				bound += " (" + a.Method + ")"
 			}
-			b.WriteString(wrapped(hanging, fmt.Sprintf("estimate %s; %s; criterion %s", withUnit(estimateFigure(s), s.Unit), bound, criterionText(s, a))))
+			b.WriteString(wrapped(hanging, fmt.Sprintf("estimate %s; %s; criterion %s", withUnit(estimateFigure(s), s.Unit),
+				bound, criterionText(s, a))))
 			if a.Verdict != "met" || strings.Contains(a.Why, "companion") {
 				b.WriteString(wrapped(hanging, a.Why))
 			}
@@ -203,7 +206,8 @@ func Outline(w io.Writer, r *record.Results) error {
 			if c.Paired {
 				how = "paired, drawn jointly"
 			}
-			entry("groups", fmt.Sprintf("%s: %d rows in %d units; %s: %d rows in %d units; %s", c.Of[0], c.N[0], c.Units[0], c.Of[1], c.N[1],
+			entry("groups", fmt.Sprintf("%s: %d rows in %d units; %s: %d rows in %d units; %s", c.Of[0], c.N[0], c.Units[0],
+				c.Of[1], c.N[1],
 				c.Units[1], how))
 		}
 		if len(s.Design.Strata) > 1 {

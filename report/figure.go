@@ -29,7 +29,7 @@ type marker struct {
 
 const (
 	figureGutter = 15.0 // left of the panel
-	panelHeight  = 34.0
+	panelHeight  = 26.0
 	zoneHeight   = 6.0 // below the panel, for the interval
 	axisHeight   = 9.5
 )
@@ -58,17 +58,17 @@ func (d *distribution) shown() (low, high float64) {
 			low, high = low/2, high/2
 		}
 	}
-	core := high/2 - low/2
+	core := float64(high/2) - float64(low/2)
 	for _, m := range d.criteria {
 		if m.value == nil {
 			continue
 		}
 		l, h := min(low, *m.value), max(high, *m.value)
-		if h/2-l/2 <= 5*core {
+		if float64(h/2)-float64(l/2) <= float64(5*core) {
 			low, high = l, h
 		}
 	}
-	pad := float64((high/2 - low/2) * 0.06)
+	pad := float64((float64(high/2) - float64(low/2)) * 0.06)
 	l, h := low-pad, high+pad
 	if math.IsInf(l, 0) || math.IsInf(h, 0) {
 		return low, high
@@ -77,13 +77,13 @@ func (d *distribution) shown() (low, high float64) {
 }
 
 // layout returns the flags and how many lanes they take.
-func (d *distribution) layout(s scale) ([]flag, int) {
-	var flags []flag
+func (d *distribution) layout(s scale) ([]pennant, int) {
+	var flags []pennant
 	add := func(m marker, st style, staff pen) {
 		if m.value == nil {
 			return
 		}
-		f := flag{x: s.at(*m.value), label: st.face.clean(m.label), style: st, staff: staff}
+		f := pennant{x: s.at(*m.value), label: shorten(st, m.label, 70), style: st, staff: staff}
 		if *m.value < s.low {
 			f.x, f.offside, f.label = s.from, true, "← "+f.label
 		} else if *m.value > s.high {
@@ -139,7 +139,7 @@ func (d *distribution) draw(p *page, y float64) {
 	p.line(pen{hair, 0.2, nil}, spot{x.from, floor}, spot{x.to, floor})
 	d.axisBelow(p, x, base)
 
-	level := func(f flag) float64 { return top - 1 - float64(float64(f.lane)*laneStep) }
+	level := func(f pennant) float64 { return top - 1 - float64(float64(f.lane)*laneStep) }
 	for _, f := range flags {
 		p.line(f.staff, spot{f.x, base}, spot{f.x, level(f) - 2.6})
 	}
@@ -161,7 +161,7 @@ func (d *distribution) grid(p *page, x, up scale) {
 		if t.value > 0 {
 			p.line(pen{hair, 0.15, nil}, spot{x.from, y}, spot{x.to, y})
 		}
-		p.textRight(x.from-1.5, y+0.9, tickStyle, grouped(int64(t.value)))
+		p.textRight(x.from-1.5, y+0.9, tickStyle, shorten(tickStyle, grouped(int64(t.value)), figureGutter-2))
 	}
 	p.text(leftEdge, up.to-1.6, tickStyle, d.vertical)
 }
@@ -185,7 +185,7 @@ func (d *distribution) bars(p *page, x, up scale) {
 			from, to, y := x.at(d.edges[i]), x.at(d.edges[i+1]), up.at(float64(n))
 			if to-from < 0.8 { // one value, or bins too narrow to be seen
 				flush()
-				middle := (from + to) / 2
+				middle := float64((from + to) / 2)
 				from, to = middle-0.4, middle+0.4
 			}
 			top = append(top, spot{from, y}, spot{to, y})

@@ -14,11 +14,11 @@ type scale struct {
 
 // at returns where v stands. The difference is halved, so that it cannot overflow.
 func (s scale) at(v float64) float64 {
-	half := s.high/2 - s.low/2
+	half := float64(s.high/2) - float64(s.low/2)
 	if half == 0 {
 		return (s.from + s.to) / 2
 	}
-	return s.from + float64((v/2-s.low/2)/half*(s.to-s.from))
+	return s.from + float64((float64(v/2)-float64(s.low/2))/half*(s.to-s.from))
 }
 
 // holds says whether v lies on the scale.
@@ -119,7 +119,7 @@ func fittingTicks(s scale, st style, most int) ([]tick, int) {
 		fits := true
 		for i := 1; i < len(out); i++ {
 			gap := s.at(out[i].value) - s.at(out[i-1].value)
-			half := (st.face.width(out[i].label, st.size) + st.face.width(out[i-1].label, st.size)) / 2
+			half := float64((st.face.width(out[i].label, st.size) + st.face.width(out[i-1].label, st.size)) / 2)
 			if half+2 > gap {
 				fits = false
 			}

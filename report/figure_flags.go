@@ -2,8 +2,8 @@ package report
 
 import "slices"
 
-// A flag is a label on a staff that rises from a value on the horizontal axis.
-type flag struct {
+// A pennant is a label on a staff that rises from a value on the horizontal axis.
+type pennant struct {
 	x       float64 // of the staff
 	label   string
 	style   style
@@ -21,7 +21,7 @@ const (
 )
 
 // span returns from where to where the label reaches.
-func (f *flag) span() (from, to float64) {
+func (f *pennant) span() (from, to float64) {
 	if f.left {
 		return f.x - flagGap - f.width, f.x - flagGap
 	}
@@ -31,8 +31,8 @@ func (f *flag) span() (from, to float64) {
 // arrange chooses for every flag a side and a lane such that no label covers another label or a staff, all labels stand
 // between the edges, and few lanes are used. It returns the number of lanes. There are at most a handful of flags, so
 // all sides are tried; of equally good choices the first counts, labels on the right being tried first.
-func arrange(flags []flag, from, to float64) int {
-	slices.SortStableFunc(flags, func(a, b flag) int {
+func arrange(flags []pennant, from, to float64) int {
+	slices.SortStableFunc(flags, func(a, b pennant) int {
 		switch {
 		case a.x < b.x:
 			return -1
@@ -41,7 +41,7 @@ func arrange(flags []flag, from, to float64) int {
 		}
 		return 0
 	})
-	best, bestLanes := []flag(nil), len(flags)+1
+	best, bestLanes := []pennant(nil), len(flags)+1
 	for sides := range 1 << len(flags) {
 		try := slices.Clone(flags)
 		inside := true
@@ -73,7 +73,7 @@ func arrange(flags []flag, from, to float64) int {
 
 // stack gives every flag a lane and returns the number of lanes, or 0 if the sides allow none. Flags take the lowest lane
 // they can, one after the other; all orders are tried, because the order decides how many lanes are used.
-func stack(flags []flag) int {
+func stack(flags []pennant) int {
 	lanes, best := make([]int, len(flags)), []int(nil)
 	most := len(flags) + 1 // one lane more than are allowed
 	placed := make([]int, 0, len(flags))
@@ -114,7 +114,7 @@ func stack(flags []flag) int {
 }
 
 // free says whether flag i may stand in a lane beside those placed: no staff crosses a label, no labels overlap.
-func free(flags []flag, placed, lanes []int, i, lane int) bool {
+func free(flags []pennant, placed, lanes []int, i, lane int) bool {
 	p := &flags[i]
 	from, to := p.span()
 	for _, j := range placed {

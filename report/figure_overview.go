@@ -57,7 +57,7 @@ func (o *overview) atoms(before float64) []atom {
 	}
 	low, high = max(low, -farthest), min(high, farthest)
 	o.labelWidth = 62
-	const verdictWidth = 26
+	const verdictWidth = 27
 	o.unit = scale{low - 0.3, high + 0.3, leftEdge + o.labelWidth + 4, rightEdge - verdictWidth - 3}
 	head := atom{height: 8.2, keep: true, draw: o.head}
 	out := []atom{head}
@@ -75,24 +75,21 @@ func (o *overview) atoms(before float64) []atom {
 func (o *overview) head(p *page, y float64) {
 	at := o.unit.at(0)
 	st := tickStyle
-	p.textRight(at-2.6, y+4.2, st, o.outside)
-	p.text(at+2.6, y+4.2, st, o.within)
-	arrow := pen{soft, 0.2, nil}
-	p.line(arrow, spot{at - 1.8, y + 3.3}, spot{at - 0.5, y + 3.3})
-	p.line(arrow, spot{at + 0.5, y + 3.3}, spot{at + 1.8, y + 3.3})
+	p.textRight(at-1.5, y+4.2, st, "← "+o.outside)
+	p.text(at+1.5, y+4.2, st, o.within+" →")
 	p.line(pen{ink, 0.3, nil}, spot{leftEdge, y + 6.6}, spot{rightEdge, y + 6.6})
-	p.line(criterionPen, spot{at, y + 6.6}, spot{at, y + 8.2})
+	p.line(zeroPen, spot{at, y + 2}, spot{at, y + 8.2})
 }
 
 func (o *overview) row(p *page, y, height float64, r *overviewRow, lines []textLine) {
 	s := o.unit
-	middle := y + height/2
-	top := middle - float64(float64(len(lines))*leading(8))/2
+	middle := y + float64(height/2)
+	top := middle - float64(float64(len(lines))*leading(8)/2)
 	for i, l := range lines {
 		l.draw(p, leftEdge, top+float64(float64(i)*leading(8))+baseline(8))
 	}
 	p.line(pen{hair, 0.15, nil}, spot{leftEdge, y + height}, spot{rightEdge, y + height})
-	p.line(criterionPen, spot{s.at(0), y}, spot{s.at(0), y + height})
+	p.line(zeroPen, spot{s.at(0), y}, spot{s.at(0), y + height})
 	r.sign.draw(p, rightEdge-24, middle, 1.35)
 	st := flagStyle
 	for _, l := range wrap(r.verdict, 20) {
@@ -158,5 +155,7 @@ func signed(n int64) string {
 	}
 	return shifted(n, 0)
 }
+
+var zeroPen = pen{ink, 0.4, nil} // solid, because it is drawn row by row
 
 var criterionPen = pen{ink, 0.5, []float64{2.6, 0.8, 0.5, 0.8}}

@@ -50,9 +50,9 @@ func TestTicks(t *testing.T) {
 func TestFlagsNeverOverlap(t *testing.T) {
 	random := rand.New(rand.NewPCG(1, 2))
 	for trial := range 20000 {
-		var flags []flag
+		var flags []pennant
 		for range 1 + random.IntN(5) {
-			f := flag{x: 30 + 150*random.Float64(), width: 12 + 20*random.Float64()}
+			f := pennant{x: 30 + 150*random.Float64(), width: 12 + 20*random.Float64()}
 			if random.IntN(4) == 0 {
 				f.x = 30 + 150*float64(random.IntN(4))/3 // coincidences and edges
 			}
@@ -81,7 +81,7 @@ func TestFlagsNeverOverlap(t *testing.T) {
 }
 
 func TestArrangeUsesOneLaneWhereLabelsFit(t *testing.T) {
-	flags := []flag{{x: 100, width: 20}, {x: 40, width: 20}, {x: 180, width: 20}}
+	flags := []pennant{{x: 100, width: 20}, {x: 40, width: 20}, {x: 180, width: 20}}
 	if lanes := arrange(flags, 30, 186); lanes != 1 {
 		t.Errorf("%d lanes, want 1", lanes)
 	}
@@ -105,7 +105,7 @@ func TestScaleSurvivesExtremes(t *testing.T) {
 
 // Labels so wide that some staff must pass behind one still do not cover each other.
 func TestWideFlagsStandInLanesOfTheirOwn(t *testing.T) {
-	flags := []flag{{x: 62, width: 39}, {x: 100, width: 47}, {x: 130, width: 40}, {x: 159, width: 33}}
+	flags := []pennant{{x: 62, width: 39}, {x: 100, width: 47}, {x: 130, width: 40}, {x: 159, width: 33}}
 	if lanes := arrange(flags, 30, 186); lanes != 4 {
 		t.Errorf("%d lanes, want 4", lanes)
 	}

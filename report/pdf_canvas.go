@@ -78,7 +78,7 @@ func (p *page) text(x, y float64, s style, text string) float64 {
 	if text == "" {
 		return 0
 	}
-	y -= s.rise * s.size * point
+	y -= float64(s.rise * s.size * point)
 	w := s.face.width(text, s.size)
 	p.marks = append(p.marks, mark{kind: markText, x: x, y: y, w: w, text: text, style: s})
 	return w
@@ -91,7 +91,7 @@ func (p *page) textRight(x, y float64, s style, text string) {
 
 // textCentre draws text with its middle at x.
 func (p *page) textCentre(x, y float64, s style, text string) {
-	p.text(x-s.face.width(s.face.clean(text), s.size)/2, y, s, text)
+	p.text(x-float64(s.face.width(s.face.clean(text), s.size)/2), y, s, text)
 }
 
 // line draws a line through the spots.

@@ -23,7 +23,8 @@ type atom struct {
 type flow struct {
 	pages   []page
 	y       float64
-	fresh   bool // nothing stands on the last page yet
+	fresh   bool   // nothing stands on the last page yet
+	waiting []atom // that stay with what is added next
 	targets map[string]target
 }
 
@@ -41,10 +42,16 @@ func (f *flow) turn() {
 
 // add places atoms. Those that belong together move to the next page together, unless they fill more than a page.
 func (f *flow) add(atoms ...atom) {
+	atoms = append(f.waiting, atoms...)
+	f.waiting = nil
 	for len(atoms) > 0 {
 		n := 1
 		for n < len(atoms) && atoms[n-1].keep {
 			n++
+		}
+		if atoms[n-1].keep {
+			f.waiting = atoms
+			return
 		}
 		need := 0.0
 		for i, a := range atoms[:n] {
@@ -60,6 +67,14 @@ func (f *flow) add(atoms ...atom) {
 			f.place(&atoms[i])
 		}
 		atoms = atoms[n:]
+	}
+}
+
+// end places what still waits for a successor.
+func (f *flow) end() {
+	if n := len(f.waiting); n > 0 {
+		f.waiting[n-1].keep = false
+		f.add()
 	}
 }
 
@@ -102,11 +117,20 @@ func together(atoms []atom) []atom {
 	return atoms
 }
 
+// height returns how much room atoms take in the middle of a page.
+func height(atoms []atom) float64 {
+	sum := 0.0
+	for _, a := range atoms {
+		sum += a.before + a.height
+	}
+	return sum
+}
+
 // leading returns the height of a line of text set at a size, in millimetres.
-func leading(size float64) float64 { return 1.42 * size * point }
+func leading(size float64) float64 { return float64(1.42 * size * point) }
 
 // baseline returns how far below the upper edge of its line the baseline of text lies.
-func baseline(size float64) float64 { return 1.07 * size * point }
+func baseline(size float64) float64 { return float64(1.07 * size * point) }
 
 // paragraph sets runs in lines. The first two and the last two lines stay together.
 func paragraph(runs []run, x, width, before float64) []atom {

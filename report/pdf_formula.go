@@ -79,7 +79,10 @@ func readPieces(signs []string, closing string, small bool) (out []piece, rest [
 			signs = rest
 			group := piece{kind: pieceGroup, inner: inner}
 			if sign == "₍" {
-				group = piece{kind: pieceLowered, inner: []piece{{kind: pieceGroup, inner: normalForm(inner)}}}
+				group.inner = normalForm(inner)
+				if closing != "₎" { // else it stands inside an index already
+					group = piece{kind: pieceLowered, inner: []piece{group}}
+				}
 			}
 			out = append(out, group)
 		case ")", "₎":
@@ -167,6 +170,14 @@ func bind(in []piece, small bool) []piece {
 		out = append(append(append([]piece{}, out[:from]...), f), out[to:]...)
 		i = from
 	}
+	for i, p := range out { // (1/n)·Σ needs no parentheses once the bar is drawn, f(1/n) and (1/n)² do
+		bare := open([]piece{p})
+		alone := i == 0 || out[i-1].blank() || out[i-1].is(operators+"·×")
+		followed := i+1 < len(out) && !out[i+1].blank() && !out[i+1].is(operators+"·×")
+		if p.kind == pieceGroup && len(bare) == 1 && bare[0].kind == pieceFraction && alone && !followed {
+			out[i] = bare[0]
+		}
+	}
 	return out
 }
 
@@ -218,8 +229,8 @@ func setPieces(in []piece, s style) box {
 
 func setSigns(text string, s style) box {
 	text = s.face.clean(text)
-	em := s.size * point
-	return box{w: s.face.width(text, s.size), up: 0.76 * em, down: 0.24 * em,
+	em := float64(s.size * point)
+	return box{w: s.face.width(text, s.size), up: float64(0.76 * em), down: float64(0.24 * em),
 		draw: func(p *page, x, y float64) { p.text(x, y, s, text) }}
 }
 
@@ -239,9 +250,9 @@ func beside(boxes ...box) box {
 }
 
 func setPiece(c piece, s style) box {
-	em := s.size * point
+	em := float64(s.size * point)
 	smaller := s
-	rule := pen{s.colour, 0.05 * em, nil}
+	rule := pen{s.colour, float64(0.05 * em), nil}
 	switch c.kind {
 	case pieceGroup:
 		inner := setPieces(c.inner, s)
@@ -249,36 +260,36 @@ func setPiece(c piece, s style) box {
 	case pieceRaised:
 		smaller.size *= 0.72
 		inner := setPieces(c.inner, smaller)
-		rise := 0.42 * em
-		return box{w: inner.w + 0.04*em, up: inner.up + rise, down: max(0, inner.down-rise),
-			draw: func(p *page, x, y float64) { inner.draw(p, x+0.02*em, y-rise) }}
+		rise := float64(0.42 * em)
+		return box{w: inner.w + float64(0.04*em), up: inner.up + rise, down: max(0, inner.down-rise),
+			draw: func(p *page, x, y float64) { inner.draw(p, x+float64(0.02*em), y-rise) }}
 	case pieceLowered:
 		smaller.size *= 0.72
 		inner := setPieces(c.inner, smaller)
-		fall := 0.16 * em
-		return box{w: inner.w + 0.04*em, up: max(0, inner.up-fall), down: inner.down + fall,
-			draw: func(p *page, x, y float64) { inner.draw(p, x+0.02*em, y+fall) }}
+		fall := float64(0.16 * em)
+		return box{w: inner.w + float64(0.04*em), up: max(0, inner.up-fall), down: inner.down + fall,
+			draw: func(p *page, x, y float64) { inner.draw(p, x+float64(0.02*em), y+fall) }}
 	case pieceRoot:
 		inner := setPieces(c.inner, s)
-		head, air := 0.62*em, 0.14*em
+		head, air := float64(0.62*em), float64(0.14*em)
 		top := inner.up + air
-		return box{w: head + inner.w + 0.12*em, up: top + 0.08*em, down: inner.down, draw: func(p *page, x, y float64) {
-			p.line(rule, spot{x + 0.04*em, y - 0.28*em}, spot{x + 0.16*em, y - 0.36*em})
-			p.line(pen{s.colour, 0.09 * em, nil}, spot{x + 0.16*em, y - 0.36*em}, spot{x + 0.34*em, y + inner.down*0.8})
-			p.line(rule, spot{x + 0.34*em, y + inner.down*0.8}, spot{x + head - 0.06*em, y - top}, spot{x + head + inner.w + 0.06*em, y - top})
+		return box{w: head + inner.w + float64(0.12*em), up: top + float64(0.08*em), down: inner.down, draw: func(p *page, x, y float64) {
+			p.line(rule, spot{x + float64(0.04*em), y - float64(0.28*em)}, spot{x + float64(0.16*em), y - float64(0.36*em)})
+			p.line(pen{s.colour, float64(0.09 * em), nil}, spot{x + float64(0.16*em), y - float64(0.36*em)}, spot{x + float64(0.34*em), y + float64(inner.down*0.8)})
+			p.line(rule, spot{x + float64(0.34*em), y + float64(inner.down*0.8)}, spot{x + head - float64(0.06*em), y - top}, spot{x + head + inner.w + float64(0.06*em), y - top})
 			inner.draw(p, x+head, y)
 		}}
 	case pieceFraction:
 		smaller.size *= 0.94
 		num, den := setPieces(c.inner, smaller), setPieces(c.below, smaller)
-		w := max(num.w, den.w) + 0.3*em
-		axis, air := 0.3*em, 0.14*em
-		return box{w: w + 0.16*em, up: axis + air + num.up + num.down, down: air + den.up + den.down - axis,
+		w := max(num.w, den.w) + float64(0.3*em)
+		axis, air := float64(0.3*em), float64(0.14*em)
+		return box{w: w + float64(0.16*em), up: axis + air + num.up + num.down, down: air + den.up + den.down - axis,
 			draw: func(p *page, x, y float64) {
-				x += 0.08 * em
-				num.draw(p, x+(w-num.w)/2, y-axis-air-num.down)
+				x += float64(0.08 * em)
+				num.draw(p, x+float64((w-num.w)/2), y-axis-air-num.down)
 				p.line(rule, spot{x, y - axis}, spot{x + w, y - axis})
-				den.draw(p, x+(w-den.w)/2, y-axis+air+den.up)
+				den.draw(p, x+float64((w-den.w)/2), y-axis+air+den.up)
 			}}
 	}
 	return setSigns(c.text, s)
@@ -286,15 +297,15 @@ func setPiece(c piece, s style) box {
 
 // bracket sets a parenthesis as tall as what it encloses.
 func bracket(inner box, s style, sign string) box {
-	em := s.size * point
-	if inner.up <= 0.9*em && inner.down <= 0.35*em {
+	em := float64(s.size * point)
+	if inner.up <= float64(0.9*em) && inner.down <= float64(0.35*em) {
 		return setSigns(sign, s)
 	}
-	tall := (inner.up + inner.down) / (1.0 * em)
+	tall := (inner.up + inner.down) / (float64(1.0 * em))
 	large := s
 	large.size *= min(tall, 2.6)
 	b := setSigns(sign, large)
-	middle := (inner.up - inner.down) / 2 // of the contents, above the baseline
+	middle := float64((inner.up - inner.down) / 2) // of the contents, above the baseline
 	lift := middle - float64(0.3*large.size*point)
 	return box{w: b.w, up: inner.up, down: inner.down, draw: func(p *page, x, y float64) { b.draw(p, x, y-lift) }}
 }
@@ -327,10 +338,15 @@ func formula(text string, s style, x, width float64) []atom {
 			}
 			continue
 		}
-		height := max(set.up+set.down+2*air, leading(s.size)+air)
+		height := max(set.up+set.down+float64(2*air), leading(s.size)+air)
 		add(height, func(p *page, y float64) {
-			set.draw(p, x+inset, y+(height-set.up-set.down)/2+set.up)
+			set.draw(p, x+inset, y+float64((height-set.up-set.down)/2)+set.up)
 		})
 	}
+	if len(atoms) == 0 {
+		return nil
+	}
+	edge := func(p *page, y float64) { p.box(band, x, y-0.02, width, 0.84) }
+	atoms = append([]atom{{height: 0.8, draw: edge}}, append(atoms, atom{height: 0.8, draw: edge})...)
 	return together(atoms)
 }

@@ -40,7 +40,7 @@ type table struct {
 }
 
 const (
-	cellGap    = 3.2 // between columns
+	cellGap    = 3.8 // between columns
 	cellAbove  = 1.0
 	cellBelow  = 1.1
 	symbolRoom = 4.6
@@ -110,10 +110,34 @@ func isFigure(text string) bool {
 		})
 }
 
-// widths shares the measure out: each column gets its contents on one line if that fits; else the widest columns give.
+// widths shares the measure out: each column gets its contents on one line if that fits, else its contents on one line
+// below a head of several; else the widest columns give.
 func (t *table) widths(head []cell) []float64 {
 	n := len(t.columns)
-	whole, word := make([]float64, n), make([]float64, n)
+	whole, word := t.wanted(head, false)
+	available := measure - t.indent - float64(cellGap*float64(n-1))
+	if total(whole) > available {
+		whole, word = t.wanted(head, true)
+	}
+	if total(whole) <= available {
+		return t.spread(whole, available)
+	}
+	return t.squeeze(whole, word, available)
+}
+
+func total(widths []float64) float64 {
+	sum := 0.0
+	for _, w := range widths {
+		sum += w
+	}
+	return sum
+}
+
+// wanted returns for each column the width of its contents on one line and the least width. The head counts with its
+// widest word only if it may be broken.
+func (t *table) wanted(head []cell, breakHead bool) (whole, word []float64) {
+	n := len(t.columns)
+	whole, word = make([]float64, n), make([]float64, n)
 	for j, c := range t.columns {
 		before, after := 0.0, 0.0
 		for i := -1; i < len(t.rows); i++ {
@@ -122,11 +146,11 @@ func (t *table) widths(head []cell) []float64 {
 				of = t.rows[i]
 			}
 			w, longest := of[j].natural()
-			if c.align != left {
+			switch {
+			case i < 0 && breakHead:
+				w = longest
+			case i >= 0 && c.align != left:
 				longest = w // numbers are not broken
-				if i < 0 {
-					_, longest = of[j].natural()
-				}
 			}
 			if c.align == decimal && i >= 0 {
 				b, a := of[j].split()
@@ -142,27 +166,24 @@ func (t *table) widths(head []cell) []float64 {
 		}
 		whole[j] = max(whole[j], word[j])
 	}
-	available := measure - t.indent - cellGap*float64(n-1)
-	total := 0.0
-	for _, w := range whole {
-		total += w
-	}
-	if total <= available {
-		if !t.tight {
-			whole[n-1] += available - total // the last column takes the rest; numbers there keep their place by padding
-			if t.columns[n-1].align != left {
-				whole[n-1] -= available - total
-				for j, c := range t.columns {
-					if c.align == left {
-						whole[j] += available - total
-						break
-					}
-				}
-			}
-		}
+	return whole, word
+}
+
+// spread gives the room that is left to the last column of text, or to the first if numbers stand last.
+func (t *table) spread(whole []float64, available float64) []float64 {
+	if t.tight {
 		return whole
 	}
-	// Lower a common ceiling until the columns fit; none goes below its longest word.
+	at := len(whole) - 1
+	if t.columns[at].align != left {
+		at = max(0, slices.IndexFunc(t.columns, func(c column) bool { return c.align == left }))
+	}
+	whole[at] += available - total(whole)
+	return whole
+}
+
+// squeeze lowers a common ceiling until the columns fit; none goes below its longest word.
+func (t *table) squeeze(whole, word []float64, available float64) []float64 {
 	low, high := 0.0, slices.Max(whole)
 	fit := func(ceiling float64) (out []float64, sum float64) {
 		for j := range whole {
@@ -206,19 +227,19 @@ func (t *table) atoms() []atom {
 		titled = titled || c.title != ""
 	}
 	widths := t.widths(head)
-	total := cellGap * float64(len(widths)-1)
-	for _, w := range widths {
-		total += w
-	}
+	full := total(widths) + float64(cellGap*float64(len(widths)-1))
 	x0 := leftEdge + t.indent
 	rule := func(c colour, w float64) func(*page, float64) {
-		return func(p *page, y float64) { p.line(pen{c, w, nil}, spot{x0, y}, spot{x0 + total, y}) }
+		return func(p *page, y float64) { p.line(pen{c, w, nil}, spot{x0, y}, spot{x0 + full, y}) }
 	}
 	points := t.points(widths)
 	var out []atom
 	var headAtoms []atom
 	if titled {
 		headAtoms = t.row(head, widths, nil, false)
+		for i := range headAtoms {
+			headAtoms[i].keep = true
+		}
 		headAtoms = together(append(headAtoms, atom{height: 0.4, draw: rule(ink, 0.3)}))
 		headAtoms[len(headAtoms)-1].keep = true
 	} else {
@@ -276,22 +297,25 @@ func (t *table) row(cells []cell, widths, points []float64, strong bool) []atom 
 		if last == tallest {
 			below = cellBelow
 		}
-		height := above + below + float64(last-first)*step
+		height := above + below + float64(float64(last-first)*step)
 		out = append(out, atom{height: height, draw: func(p *page, y float64) {
 			x := leftEdge + t.indent
 			if strong {
-				total := cellGap * float64(len(widths)-1)
-				for _, w := range widths {
-					total += w
-				}
-				p.box(band, x, y, total, height)
+				p.box(band, x, y, total(widths)+float64(cellGap*float64(len(widths)-1)), height)
 			}
 			for j, c := range cells {
 				if c.symbol != noSymbol && first == 0 {
-					c.symbol.draw(p, x+1.5, y+above+step/2, 1.35)
+					c.symbol.draw(p, x+1.5, y+above+float64(step/2), 1.35)
 				}
-				for i := first; i < min(last, len(lines[j])); i++ {
-					l := lines[j][i]
+				down := 0
+				if points == nil { // heads stand on their last line
+					down = tallest - len(lines[j])
+				}
+				for i := first; i < min(last, len(lines[j])+down); i++ {
+					if i < down {
+						continue
+					}
+					l := lines[j][i-down]
 					at := x + c.room()
 					switch t.columns[j].align {
 					case right:
@@ -303,7 +327,7 @@ func (t *table) row(cells []cell, widths, points []float64, strong bool) []atom 
 							at = x + points[j] - before
 						}
 					}
-					l.draw(p, at, y+above+float64(i-first)*step+baseline(t.size))
+					l.draw(p, at, y+above+float64(float64(i-first)*step)+baseline(t.size))
 				}
 				x += widths[j] + cellGap
 			}

@@ -126,8 +126,8 @@ func (l textLine) draw(p *page, x, y float64) {
 	for _, s := range l.segments {
 		p.text(x+s.x, y, s.style, s.text)
 		if s.to != "" {
-			h := s.style.size * point
-			p.areas = append(p.areas, area{x + s.x, y - h, s.w, 1.3 * h, s.to})
+			h := float64(s.style.size * point)
+			p.areas = append(p.areas, area{x + s.x, y - h, s.w, float64(1.3 * h), s.to})
 		}
 	}
 }

@@ -159,14 +159,17 @@ func intervalDecimals(s *record.Statistic, i *record.Interval) int {
 	if !i.Decides {
 		return decimals
 	}
-	for k := range s.Accept {
-		a := &s.Accept[k]
-		if a.Bound == nil {
-			continue
-		}
-		decimals = enough(decimals, *a.Bound, a, a.Verdict == "met")
-		if s.Estimate != nil && a.Verdict != "met" {
-			decimals = enough(decimals, *s.Estimate, a, a.Verdict == "not shown")
+	for before := -1; before != decimals; { // a decimal more for one figure can spoil another
+		before = decimals
+		for k := range s.Accept {
+			a := &s.Accept[k]
+			if a.Bound == nil {
+				continue
+			}
+			decimals = enough(decimals, *a.Bound, a, a.Verdict == "met")
+			if s.Estimate != nil && a.Verdict != "met" {
+				decimals = enough(decimals, *s.Estimate, a, a.Verdict == "not shown")
+			}
 		}
 	}
 	return decimals

@@ -39,7 +39,7 @@ var setups = map[string]setup{
 		`where: 'group == "treatment"', statistic: mean, of: days`, allMethods},
 	"mouse-control-mean": {"mouse.csv", "group: {type: category}, days: {type: number}", "", "",
 		`where: 'group == "control"', statistic: mean, of: days`, allMethods},
-	"shoes-diff": {"shoes.csv", "A: {type: number}, B: {type: number}", "wear: B - A", "", "statistic: mean, of: wear", allMethods},
+	"shoes-diff":     {"shoes.csv", "A: {type: number}, B: {type: number}", "wear: B - A", "", "statistic: mean, of: wear", allMethods},
 	"aircondit-mean": {"aircondit.csv", "hours: {type: number}", "", "", "statistic: mean, of: hours", allMethods},
 	"aircondit-sd": {"aircondit.csv", "hours: {type: number}", "", "", "statistic: standard deviation, of: hours",
 		"[percentile, basic, bca]"},

@@ -31,8 +31,8 @@ type tick struct {
 }
 
 // ticks returns at most `most`+1 ticks at multiples of 1, 2 or 5 times a power of ten. Labels are made from whole
-// numbers, so that zero has no sign and no label ends in 0000001. With very large or very small values the labels are to
-// be multiplied by the power of ten returned as exponent.
+// numbers, so that zero has no sign and no label ends in 0000001. With very large or very small values the labels are
+// to be multiplied by the power of ten returned as exponent.
 func ticks(low, high float64, most int) (out []tick, exponent int) {
 	if !(low < high) || most < 1 || math.IsInf(low, 0) || math.IsInf(high, 0) {
 		return nil, 0

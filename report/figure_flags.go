@@ -71,8 +71,8 @@ func arrange(flags []pennant, from, to float64) int {
 	return bestLanes
 }
 
-// stack gives every flag a lane and returns the number of lanes, or 0 if the sides allow none. Flags take the lowest lane
-// they can, one after the other; all orders are tried, because the order decides how many lanes are used.
+// stack gives every flag a lane and returns the number of lanes, or 0 if the sides allow none. Flags take the lowest
+// lane they can, one after the other; all orders are tried, because the order decides how many lanes are used.
 func stack(flags []pennant) int {
 	lanes, best := make([]int, len(flags)), []int(nil)
 	most := len(flags) + 1 // one lane more than are allowed

@@ -66,7 +66,9 @@ func (o *overview) atoms(before float64) []atom {
 		r := &o.rows[i]
 		lines := wrap(r.label, o.labelWidth)
 		height := max(7, float64(float64(len(lines))*leading(8))+2.4)
-		out = append(out, atom{height: height, head: []atom{head}, draw: func(p *page, y float64) { o.row(p, y, height, r, lines) }})
+		out = append(out, atom{height: height, head: []atom{head}, draw: func(p *page, y float64) {
+			o.row(p, y, height, r, lines)
+		}})
 	}
 	out[len(out)-1].keep = true
 	return append(out, atom{height: 9, draw: o.foot})

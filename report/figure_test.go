@@ -94,7 +94,8 @@ func TestArrangeUsesOneLaneWhereLabelsFit(t *testing.T) {
 }
 
 func TestScaleSurvivesExtremes(t *testing.T) {
-	for _, s := range []scale{{-math.MaxFloat64, math.MaxFloat64, 10, 20}, {0, 5e-324, 10, 20}, {3, 3, 10, 20}, {-1, 1, 10, 20}} {
+	for _, s := range []scale{{-math.MaxFloat64, math.MaxFloat64, 10, 20}, {0, 5e-324, 10, 20}, {3, 3, 10, 20},
+		{-1, 1, 10, 20}} {
 		for _, v := range []float64{s.low, s.high, s.low/2 + s.high/2} {
 			if x := s.at(v); !(x >= 10 && x <= 20) {
 				t.Errorf("%+v: %g stands at %g", s, v, x)

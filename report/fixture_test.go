@@ -11,8 +11,8 @@ import (
 )
 
 // fixture returns an invented record and its data: a small study with every kind of verdict, a comparison, a companion
-// that decides, an interval that cannot be had, a null estimate, and advisories of each severity. Its figures were made up
-// to fit together roughly; no test may take them for results.
+// that decides, an interval that cannot be had, a null estimate, and advisories of each severity. Its figures were made
+// up to fit together roughly; no test may take them for results.
 func fixture() (*record.Record, *source.Data) {
 	text := fixturePlan
 	plan := spec.Plan{
@@ -71,13 +71,15 @@ func fixture() (*record.Record, *source.Data) {
 		results.Statistics = append(results.Statistics, s)
 	}
 	pouches := record.Design{Unit: []string{"pouch"}, By: []string{"lot"}, Units: 30, SHA256: fixtureDigest("by pouch"),
-		Strata: []record.Stratum{{Name: "A", Units: 10, Rows: 20}, {Name: "B", Units: 10, Rows: 20}, {Name: "C", Units: 10, Rows: 20}}}
+		Strata: []record.Stratum{{Name: "A", Units: 10, Rows: 20}, {Name: "B", Units: 10, Rows: 20}, {Name: "C", Units: 10,
+			Rows: 20}}}
 	rows := record.Design{Unit: []string{"row"}, By: []string{}, Units: 58, SHA256: fixtureDigest("by row"),
 		Strata: []record.Stratum{{Name: "", Units: 58, Rows: 58}}}
 
 	add(spec.Statistic{Bound: spec.Lower, Intervals: []string{"bca", "percentile"},
 		Accept: spec.Accept{LowerAtLeast: &spec.Number{Text: "1.20", Value: 1.2}}},
-		record.Statistic{ID: "aged median", Label: "Median peel strength, aged pouches", Role: "primary", Where: `arm == "aged"`,
+		record.Statistic{ID: "aged median", Label: "Median peel strength, aged pouches", Role: "primary",
+			Where:     `arm == "aged"`,
 			Statistic: "median", Of: []string{"strength"}, With: []spec.Setting{}, Unit: "N/15mm", Decimals: 3, Design: pouches,
 			Estimate: num(1.31), StandardError: num(0.0213), Bias: num(0.00112), Resamples: 20000,
 			Intervals: []record.Interval{
@@ -85,11 +87,13 @@ func fixture() (*record.Record, *source.Data) {
 					MonteCarloError: record.Limits{Lower: num(0.00041)}, Parameters: []record.Value{{Name: "z0", Value: num(0.0132)},
 						{Name: "a", Value: num(0.0211)}, {Name: "lower level", Value: num(0.0587)}}},
 				{Method: "percentile", Requested: "percentile", Confidence: "0.95", Bound: spec.Lower, Lower: num(1.265),
-					MonteCarloError: record.Limits{Lower: num(0.00038)}, Parameters: []record.Value{{Name: "lower rank", Value: num(1000)}}},
+					MonteCarloError: record.Limits{Lower: num(0.00038)}, Parameters: []record.Value{{Name: "lower rank",
+						Value: num(1000)}}},
 				{Method: "order statistic", Requested: "companion", Confidence: "0.95", Bound: spec.Lower, Lower: num(1.26),
 					Companion: true, Attained: num(0.9587), Parameters: []record.Value{{Name: "lower rank", Value: num(24)}}},
 			},
-			Accept: []record.Accept{{Criterion: "lower_at_least", Limit: "1.20", Method: "bca", Confidence: "0.95", Bound: num(1.27),
+			Accept: []record.Accept{{Criterion: "lower_at_least", Limit: "1.20", Method: "bca", Confidence: "0.95",
+				Bound:    num(1.27),
 				Compared: "1.27", Verdict: "met", Why: "the bound is on the right side of the criterion"}},
 			Advisories: []record.Advisory{{Code: "coarse steps", Severity: "note",
 				Text:     "The resamples give only 31 different values, the commonest in 9 % of them, so limits move in steps.",
@@ -110,11 +114,13 @@ func fixture() (*record.Record, *source.Data) {
 				{Method: "percentile", Requested: "percentile", Confidence: "0.95", Bound: spec.TwoSided, Lower: num(-0.172),
 					Upper: num(-0.051), Decides: true, MonteCarloError: record.Limits{Lower: num(0.0006), Upper: num(0.0005)},
 					Parameters: []record.Value{{Name: "lower rank", Value: num(500)}, {Name: "upper rank", Value: num(19498)}}},
-				{Method: "basic", Requested: "basic", Confidence: "0.95", Bound: spec.TwoSided, Lower: num(-0.169), Upper: num(-0.048),
+				{Method: "basic", Requested: "basic", Confidence: "0.95", Bound: spec.TwoSided, Lower: num(-0.169),
+					Upper:           num(-0.048),
 					MonteCarloError: record.Limits{Lower: num(0.0005), Upper: num(0.0006)}, Parameters: []record.Value{}}},
 			Accept: []record.Accept{
 				{Criterion: "lower_at_least", Limit: "-0.15", Method: "percentile", Confidence: "0.95", Bound: num(-0.172),
-					Compared: "-0.172", Verdict: "not shown", Why: "the estimate is on the right side of the criterion, the bound is not"},
+					Compared: "-0.172", Verdict: "not shown", Why: "the estimate is on the right side of the criterion, the bound " +
+						"is not"},
 				{Criterion: "upper_at_most", Limit: "0.15", Method: "percentile", Confidence: "0.95", Bound: num(-0.051),
 					Compared: "-0.051", Verdict: "met", Why: "the bound is on the right side of the criterion"}},
 			Advisories: []record.Advisory{},
@@ -122,57 +128,76 @@ func fixture() (*record.Record, *source.Data) {
 			Distribution: fixtureBell(-0.1104, 0.031, 19997)})
 	add(spec.Statistic{Bound: spec.Lower, Intervals: []string{"percentile"}, Companion: "decides",
 		Accept: spec.Accept{LowerAtLeast: &spec.Number{Text: "1.10", Value: 1.1}}},
-		record.Statistic{ID: "aged p10", Label: "10th percentile of peel strength, aged pouches", Role: "primary", Where: `arm == "aged"`,
+		record.Statistic{ID: "aged p10", Label: "10th percentile of peel strength, aged pouches", Role: "primary",
+			Where:     `arm == "aged"`,
 			Statistic: "quantile", Of: []string{"strength"}, With: []spec.Setting{{Name: "p", Text: "0.1", Number: 0.1},
 				{Name: "definition", Text: "7", Number: 7}}, Unit: "N/15mm", Decimals: 3, Design: rows,
 			Estimate: num(1.12), StandardError: num(0.024), Bias: num(0.003), Resamples: 20000,
 			Intervals: []record.Interval{
 				{Method: "percentile", Requested: "percentile", Confidence: "0.95", Bound: spec.Lower, Lower: num(1.09),
-					MonteCarloError: record.Limits{Lower: num(0.0003)}, Parameters: []record.Value{{Name: "lower rank", Value: num(1000)}}},
+					MonteCarloError: record.Limits{Lower: num(0.0003)}, Parameters: []record.Value{{Name: "lower rank",
+						Value: num(1000)}}},
 				{Method: "order statistic", Requested: "companion", Confidence: "0.95", Bound: spec.Lower, Lower: num(1.05),
-					Companion: true, Decides: true, Attained: num(0.9511), Parameters: []record.Value{{Name: "lower rank", Value: num(2)}}}},
+					Companion: true, Decides: true, Attained: num(0.9511), Parameters: []record.Value{{Name: "lower rank",
+						Value: num(2)}}}},
 			Accept: []record.Accept{{Criterion: "lower_at_least", Limit: "1.10", Method: "order statistic", Confidence: "0.95",
 				Bound: num(1.05), Compared: "1.05", Verdict: "not shown",
-				Why: "the estimate is on the right side of the criterion, the bound is not; decided by the companion, as the plan says: stopped by related rows"}},
+				Why: "the estimate is on the right side of the criterion, the bound is not; decided by the companion, as the " +
+					"plan says: stopped by related rows"}},
 			Advisories: []record.Advisory{
 				{Code: "related rows", Severity: "stop",
-					Text:     "Rows inside pouch resemble each other (intraclass correlation 0.52). The effective number of units is about 38, not 58.",
-					Evidence: []record.Value{{Name: "intraclass correlation", Value: num(0.52)}, {Name: "effective number", Value: num(38)}},
-					Action:   "Resample pouches, not rows.", Source: "Kish L. Survey Sampling. Wiley 1965, section 5.4"},
-				{Code: "several criteria", Severity: "note", Text: "5 criteria at 95 %: the chance that all bounds hold is at least 75 %.",
-					Evidence: []record.Value{{Name: "criteria", Value: num(5)}}, Action: "Say in the protocol why each stands alone.", Source: "Arithmetic"}},
+					Text: "Rows inside pouch resemble each other (intraclass correlation 0.52). The effective number of units is " +
+						"about 38, not 58.",
+					Evidence: []record.Value{{Name: "intraclass correlation", Value: num(0.52)}, {Name: "effective number",
+						Value: num(38)}},
+					Action: "Resample pouches, not rows.", Source: "Kish L. Survey Sampling. Wiley 1965, section 5.4"},
+				{Code: "several criteria", Severity: "note", Text: "5 criteria at 95 %: the chance that all bounds hold is at " +
+					"least 75 %.",
+					Evidence: []record.Value{{Name: "criteria", Value: num(5)}}, Action: "Say in the protocol why each stands alone.",
+					Source: "Arithmetic"}},
 			Distribution: fixtureSteps()})
 	add(spec.Statistic{Bound: spec.Upper, Intervals: []string{"bca"},
 		Accept: spec.Accept{UpperAtMost: &spec.Number{Text: "0.10", Value: 0.1}}},
-		record.Statistic{ID: "aged SD", Label: "Standard deviation of peel strength, aged pouches", Role: "supporting", Where: `arm == "aged"`,
-			Statistic: "standard deviation", Of: []string{"strength"}, With: []spec.Setting{}, Unit: "N/15mm", Decimals: 3, Design: pouches,
+		record.Statistic{ID: "aged SD", Label: "Standard deviation of peel strength, aged pouches", Role: "supporting",
+			Where:     `arm == "aged"`,
+			Statistic: "standard deviation", Of: []string{"strength"}, With: []spec.Setting{}, Unit: "N/15mm", Decimals: 3,
+			Design:   pouches,
 			Estimate: num(0.128), StandardError: num(0.0121), Bias: num(-0.002), Resamples: 20000,
-			Intervals: []record.Interval{{Method: "bca", Requested: "bca", Confidence: "0.95", Bound: spec.Upper, Upper: num(0.153),
-				Decides: true, MonteCarloError: record.Limits{Upper: num(0.0003)}, Parameters: []record.Value{{Name: "z0", Value: num(0.102)},
+			Intervals: []record.Interval{{Method: "bca", Requested: "bca", Confidence: "0.95", Bound: spec.Upper,
+				Upper:   num(0.153),
+				Decides: true, MonteCarloError: record.Limits{Upper: num(0.0003)}, Parameters: []record.Value{{Name: "z0",
+					Value: num(0.102)},
 					{Name: "a", Value: num(0.051)}, {Name: "upper level", Value: num(0.978)}}}},
-			Accept: []record.Accept{{Criterion: "upper_at_most", Limit: "0.10", Method: "bca", Confidence: "0.95", Bound: num(0.153),
+			Accept: []record.Accept{{Criterion: "upper_at_most", Limit: "0.10", Method: "bca", Confidence: "0.95",
+				Bound:    num(0.153),
 				Compared: "0.153", Verdict: "not met", Why: "estimate and bound are both on the wrong side of the criterion"}},
 			Advisories: []record.Advisory{{Code: "spread from few units", Severity: "caution",
-				Text:     "Resampling bounds of a spread are too low on the upper side, the more so the longer the tails; there are 30 units.",
+				Text: "Resampling bounds of a spread are too low on the upper side, the more so the longer the tails; there " +
+					"are 30 units.",
 				Evidence: []record.Value{{Name: "units", Value: num(30)}},
-				Action:   "Use the studentized method, or take more units rather than more readings a unit.", Source: "Simulation behind this program"}},
+				Action:   "Use the studentized method, or take more units rather than more readings a unit.",
+				Source:   "Simulation behind this program"}},
 			Distribution: fixtureBell(0.126, 0.0121, 20000)})
 	add(spec.Statistic{Bound: spec.Upper, Intervals: []string{"Clopper-Pearson"},
 		Accept: spec.Accept{UpperAtMost: &spec.Number{Text: "0.05", Value: 0.05}}},
-		record.Statistic{ID: "tears", Label: "Share of strips that tear", Role: "supporting", Statistic: "proportion", Of: []string{},
+		record.Statistic{ID: "tears", Label: "Share of strips that tear", Role: "supporting", Statistic: "proportion",
+			Of:   []string{},
 			With: []spec.Setting{{Name: "condition", Text: `failure_mode == "tear"`}},
 			Unit: "", Decimals: 4, Design: rows,
 			Estimate: num(0.0085), StandardError: num(0.0084), Bias: num(0.0001), Resamples: 20000,
-			Intervals: []record.Interval{{Method: "Clopper-Pearson", Requested: "Clopper-Pearson", Confidence: "0.95", Bound: spec.Upper,
+			Intervals: []record.Interval{{Method: "Clopper-Pearson", Requested: "Clopper-Pearson", Confidence: "0.95",
+				Bound: spec.Upper,
 				Upper: num(0.0399), Decides: true, Parameters: []record.Value{}}},
 			Accept: []record.Accept{{Criterion: "upper_at_most", Limit: "0.05", Method: "Clopper-Pearson", Confidence: "0.95",
 				Bound: num(0.0399), Compared: "0.0399", Verdict: "met", Why: "the bound is on the right side of the criterion"}},
 			Advisories: []record.Advisory{},
-			Distribution: &record.Distribution{Edges: []float64{0, 0.01, 0.02, 0.03, 0.04, 0.05}, Counts: []int{7361, 7345, 3661, 1278, 355},
+			Distribution: &record.Distribution{Edges: []float64{0, 0.01, 0.02, 0.03, 0.04, 0.05}, Counts: []int{7361, 7345,
+				3661, 1278, 355},
 				Quantiles: []record.Point{{P: 0, Value: 0}, {P: 0.5, Value: 0.0085}, {P: 1, Value: 0.05}}}})
 	add(spec.Statistic{Bound: spec.TwoSided, Intervals: []string{"studentized", "normal"}},
 		record.Statistic{ID: "spread ratio", Label: "Coefficient of variation, aged over fresh", Role: "supporting",
-			Statistic: "coefficient of variation", Of: []string{"strength"}, With: []spec.Setting{}, Unit: "", Decimals: 3, Design: pouches,
+			Statistic: "coefficient of variation", Of: []string{"strength"}, With: []spec.Setting{}, Unit: "", Decimals: 3,
+			Design: pouches,
 			Compare: &record.Compare{By: "arm", Of: [2]string{"aged", "fresh"}, As: "ratio", Paired: true, N: [2]int{58, 59},
 				Units: [2]int{30, 30}, Estimates: [2]*float64{num(0.0977), num(0.0812)}},
 			Estimate: num(1.203), StandardError: num(0.141), Bias: num(0.006), Resamples: 20000,
@@ -180,12 +205,15 @@ func fixture() (*record.Record, *source.Data) {
 				{Method: "studentized", Requested: "studentized", Confidence: "0.95", Bound: spec.TwoSided,
 					Reason:     "on more than 5 % of the resamples the standard error has no value",
 					Parameters: []record.Value{}},
-				{Method: "normal", Requested: "normal", Confidence: "0.95", Bound: spec.TwoSided, Lower: num(0.921), Upper: num(1.473),
+				{Method: "normal", Requested: "normal", Confidence: "0.95", Bound: spec.TwoSided, Lower: num(0.921),
+					Upper:           num(1.473),
 					MonteCarloError: record.Limits{Lower: num(0.0021), Upper: num(0.0021)}, Parameters: []record.Value{}}},
 			Accept: []record.Accept{}, Advisories: []record.Advisory{}, Distribution: fixtureBell(1.209, 0.141, 20000)})
-	add(spec.Statistic{Bound: spec.Lower, Intervals: []string{"bca"}, Accept: spec.Accept{LowerAtLeast: &spec.Number{Text: "0", Value: 0}}},
+	add(spec.Statistic{Bound: spec.Lower, Intervals: []string{"bca"},
+		Accept: spec.Accept{LowerAtLeast: &spec.Number{Text: "0", Value: 0}}},
 		record.Statistic{ID: "excess", Label: "Geometric mean of the excess over 1.20", Role: "supporting",
-			Statistic: "geometric mean", Of: []string{"excess"}, With: []spec.Setting{}, Unit: "N/15mm", Decimals: 3, Design: pouches,
+			Statistic: "geometric mean", Of: []string{"excess"}, With: []spec.Setting{}, Unit: "N/15mm", Decimals: 3,
+			Design:         pouches,
 			EstimateReason: "a value or a mean that must be positive is not",
 			Intervals:      []record.Interval{},
 			Accept: []record.Accept{{Criterion: "lower_at_least", Limit: "0", Confidence: "0.95", Verdict: "not shown",
@@ -272,7 +300,8 @@ func fixtureTable(s spec.Source) *source.Table {
 		case 101:
 			note = "=1+1" // text that looks like a formula
 		}
-		for j, v := range []string{fmt.Sprintf("P%03d", pouch+1), string(rune('A' + lot)), []string{"fresh", "aged"}[arm], cell, mode, note, ""} {
+		for j, v := range []string{fmt.Sprintf("P%03d", pouch+1), string(rune('A' + lot)), []string{"fresh", "aged"}[arm],
+			cell, mode, note, ""} {
 			texts[j] = append(texts[j], v)
 		}
 		t.Rows = append(t.Rows, source.Row{Line: i + 2, Excluded: excluded})
@@ -351,7 +380,8 @@ func fixtureBell(middle, width float64, resamples int) *record.Distribution {
 
 // fixtureSteps makes the histogram of a statistic that takes few values.
 func fixtureSteps() *record.Distribution {
-	d := &record.Distribution{Edges: []float64{1.03}, Quantiles: []record.Point{{P: 0, Value: 1.03}, {P: 0.5, Value: 1.12}, {P: 1, Value: 1.23}}}
+	d := &record.Distribution{Edges: []float64{1.03}, Quantiles: []record.Point{{P: 0, Value: 1.03}, {P: 0.5,
+		Value: 1.12}, {P: 1, Value: 1.23}}}
 	for i := range 40 {
 		n := 0
 		if i%4 == 1 {

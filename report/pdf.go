@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"fmt"
 	"io"
+	"math"
 	"time"
 
 	"github.com/go-pdf/fpdf"
@@ -73,15 +74,15 @@ func (d *document) write(w io.Writer) error {
 			}
 			if _, made := links[a.to]; !made {
 				links[a.to] = f.AddLink()
-				f.SetLink(links[a.to], at.y, at.page+1)
+				f.SetLink(links[a.to], grid(at.y), at.page+1)
 			}
-			f.Link(a.x, a.y, a.w, a.h, links[a.to])
+			f.Link(grid(a.x), grid(a.y), grid(a.w), grid(a.h), links[a.to])
 		}
 		// The outline entries of a page are made while it is the current one, since the library notes where it stands.
 		for _, e := range d.outline {
 			if at, known := d.targets[e.to]; known && at.page == i {
 				f.SetFont(familyName[sans], "", 9)
-				f.Bookmark(e.title, e.level, at.y)
+				f.Bookmark(e.title, e.level, grid(at.y))
 			}
 		}
 	}
@@ -94,6 +95,13 @@ func (d *document) write(w io.Writer) error {
 // A writer draws marks with the library. It states every colour and width before use, so nothing is left over.
 type writer struct{ f *fpdf.Fpdf }
 
+// grid moves a length to the nearest hundredth of a point, which is what the library writes. Its own products then lie
+// far from where a last bit, which differs between machines, would change a digit.
+func grid(mm float64) float64 {
+	const perMillimetre = 100 * 72 / 25.4
+	return math.Round(float64(mm*perMillimetre)) / perMillimetre
+}
+
 func (w writer) page(p *page) {
 	for i := range p.marks {
 		m := &p.marks[i]
@@ -102,11 +110,11 @@ func (w writer) page(p *page) {
 			w.f.SetFont(familyName[m.style.face], "", m.style.size)
 			c := m.style.colour
 			w.f.SetTextColor(int(c.r), int(c.g), int(c.b))
-			w.f.Text(m.x, m.y, m.text)
+			w.f.Text(grid(m.x), grid(m.y), m.text)
 		case markPath:
 			w.path(m)
 		case markClip:
-			w.f.ClipRect(m.x, m.y, m.w, m.h, false)
+			w.f.ClipRect(grid(m.x), grid(m.y), grid(m.w), grid(m.h), false)
 		case markUnclip:
 			w.f.ClipEnd()
 			// The end of a clip takes the file back to the font and the fill colour of its beginning, which the library
@@ -130,9 +138,9 @@ func (w writer) path(m *mark) {
 	}
 	for i, s := range m.spots {
 		if i == 0 {
-			w.f.MoveTo(s.x, s.y)
+			w.f.MoveTo(grid(s.x), grid(s.y))
 		} else {
-			w.f.LineTo(s.x, s.y)
+			w.f.LineTo(grid(s.x), grid(s.y))
 		}
 	}
 	if m.closed {

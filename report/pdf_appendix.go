@@ -12,9 +12,10 @@ import (
 	"lotproof/spec"
 )
 
-// Appendix writes the method appendix of a run as a PDF: what was asked, from which data, by which methods, what came out
-// and how far it may be trusted. It depends on the record and the rows alone and gives the same bytes every time; dates in
-// the file are those of the run. data are those that the record was made from, with one ledger for each statistic.
+// Appendix writes the method appendix of a run as a PDF: what was asked, from which data, by which methods, what came
+// out and how far it may be trusted. It depends on the record and the rows alone and gives the same bytes every time;
+// dates in the file are those of the run. data are those that the record was made from, with one ledger for each
+// statistic.
 func Appendix(w io.Writer, rec *record.Record, data *source.Data) error {
 	return layOut(rec, data).write(w)
 }
@@ -148,8 +149,9 @@ func (a *appendix) finish() *document {
 	if err != nil {
 		made = time.Unix(0, 0) // never the time of writing: a record without a time still gives the same bytes
 	}
-	return &document{title: study.ID + " – " + study.Title, subject: "Method appendix, run " + strconv.Itoa(a.rec.Run.Number),
-		author: study.Author, made: made.UTC(), pages: pages, targets: a.flow.targets, outline: a.outline}
+	return &document{title: study.ID + " – " + study.Title,
+		subject: "Method appendix, run " + strconv.Itoa(a.rec.Run.Number),
+		author:  study.Author, made: made.UTC(), pages: pages, targets: a.flow.targets, outline: a.outline}
 }
 
 // frame draws what stands on every page: whose study it is, which page, and the digests that tie the pages together.
@@ -178,7 +180,8 @@ func (a *appendix) frame(p *page, number, of int) {
 func (a *appendix) draftMark(p *page, x, y float64) {
 	s := style{face: bold, size: 7.6, colour: warning}
 	const w, h = 17.0, 4.6
-	p.outline(pen{warning, 0.35, nil}, spot{x, y - 3.4}, spot{x + w, y - 3.4}, spot{x + w, y - 3.4 + h}, spot{x, y - 3.4 + h})
+	top := y - 3.4
+	p.outline(pen{warning, 0.35, nil}, spot{x, top}, spot{x + w, top}, spot{x + w, top + h}, spot{x, top + h})
 	p.textCentre(x+w/2, y, s, "DRAFT")
 }
 

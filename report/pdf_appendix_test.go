@@ -8,6 +8,7 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 	"sync"
 	"testing"
@@ -167,13 +168,16 @@ func TestAppendixUnusual(t *testing.T) {
 				s := &r.Results.Statistics[i]
 				v := []float64{math.MaxFloat64, -math.MaxFloat64, math.SmallestNonzeroFloat64, -1e-300, 123456789012345680}[i%5]
 				s.Estimate, s.StandardError, s.Bias = num(v), num(math.Abs(v)), num(v)
-				s.Distribution = &record.Distribution{Edges: []float64{-math.MaxFloat64, 0, math.MaxFloat64}, Counts: []int{math.MaxInt, 1}}
+				s.Distribution = &record.Distribution{Edges: []float64{-math.MaxFloat64, 0, math.MaxFloat64},
+					Counts: []int{math.MaxInt, 1}}
 				for j := range s.Intervals {
 					s.Intervals[j].Lower, s.Intervals[j].Upper = num(-math.MaxFloat64), num(v)
 				}
 			}
 		}, ""},
-		{"a limit that is no number", func(r *record.Record, d *source.Data) { r.Results.Statistics[0].Accept[0].Limit = "?" }, ""},
+		{"a limit that is no number", func(r *record.Record, d *source.Data) {
+			r.Results.Statistics[0].Accept[0].Limit = "?"
+		}, ""},
 		{"thousands of excluded rows", func(r *record.Record, d *source.Data) {
 			lines := make([]int, 5000)
 			for i := range lines {
@@ -238,6 +242,16 @@ func TestAppendixUnusual(t *testing.T) {
 				must(t, os.WriteFile(name, one.Bytes(), 0o666))
 			}
 		})
+	}
+}
+
+// Both reports cite the same literature, numbered alike.
+func TestAppendixCitesTheReferences(t *testing.T) {
+	rec, data := fixture()
+	a := newAppendix(rec, data)
+	a.compose()
+	if want := references(&rec.Results); !slices.Equal(a.cited, want) {
+		t.Errorf("cited:\n%s\nwant:\n%s", strings.Join(a.cited, "\n"), strings.Join(want, "\n"))
 	}
 }
 

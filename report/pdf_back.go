@@ -12,8 +12,8 @@ func (a *appendix) limitsPart() {
 	for _, text := range validityTexts(a.results) {
 		f.add(bullet(plainRun(body, text), 1.6)...)
 	}
-	t := table{columns: []column{{title: "Advisory", least: 25, most: 25}, {title: "Statistic", most: 32}, {title: "Finding and what to do"},
-		{title: "Source of the rule", most: 36}}, size: small.size, before: 1}
+	t := table{columns: []column{{title: "Advisory", least: 25, most: 25}, {title: "Statistic", most: 32},
+		{title: "Finding and what to do"}, {title: "Source of the rule", most: 36}}, size: small.size, before: 1}
 	for _, severity := range []string{"stop", "caution", "note"} {
 		for i := range a.results.Statistics {
 			s := &a.results.Statistics[i]
@@ -23,15 +23,16 @@ func (a *appendix) limitsPart() {
 					continue
 				}
 				t.rows = append(t.rows, []cell{
-					{runs: []run{{text: severity, style: smallBold}, {text: "\n" + v.Code, style: quiet}}, symbol: severitySymbol(severity)},
+					{runs: []run{{text: severity, style: smallBold}, {text: "\n" + v.Code, style: quiet}},
+						symbol: severitySymbol(severity)},
 					{runs: []run{{text: s.Label, style: small.in(accent), to: statisticName(i)}}},
-					{runs: []run{{text: v.Text + " ", style: small}, {text: v.Action + " ", style: small}, {text: evidenceText(v), style: quiet}}},
+					{runs: []run{{text: v.Text + " " + v.Action + " ", style: small}, {text: evidenceText(v), style: quiet}}},
 					cellText(quiet, v.Source)})
 			}
 		}
 	}
 	if len(t.rows) == 0 {
-		f.add(prose("No advisory was given. That does not show that all is well; only what is listed in the catalogue is checked.")...)
+		f.add(prose("No advisory was given.")...)
 	} else {
 		f.add(tableWithCaption(caption(a.tableLabel(), "Advisories, the gravest first.", 4), t)...)
 	}
@@ -64,7 +65,8 @@ func (a *appendix) provenancePart() {
 
 // digests lists the digests of sources and resampling designs.
 func (a *appendix) digests() {
-	t := table{columns: []column{{title: "Source or design"}, {title: "Digest (SHA-256)", least: 98}}, size: small.size, before: 1}
+	t := table{columns: []column{{title: "Source or design"}, {title: "Digest (SHA-256)", least: 98}},
+		size: small.size, before: 1}
 	for _, s := range a.results.Sources {
 		t.rows = append(t.rows, []cell{cellText(small, "source "+s.Name+": "+s.File), cellText(code, s.SHA256)})
 	}
@@ -81,7 +83,9 @@ func (a *appendix) digests() {
 	for _, d := range order {
 		t.rows = append(t.rows, []cell{cellText(small, "design of "+strings.Join(users[d], ", ")), cellText(code, d)})
 	}
-	a.flow.add(tableWithCaption(caption(a.tableLabel(), "Digests of the sources and of the resampling designs; a design and the seed address the random streams.", 4), t)...)
+	over := caption(a.tableLabel(), "Digests of the sources and of the resampling designs; a design and the seed "+
+		"address the random streams.", 4)
+	a.flow.add(tableWithCaption(over, t)...)
 }
 
 // amendments lists the approved changes of the plan.
@@ -89,15 +93,15 @@ func (a *appendix) amendments() {
 	if len(a.plan.Amendments) == 0 {
 		return
 	}
-	t := table{columns: []column{{title: "No.", align: right}, {title: "Date", least: 20}, {title: "What changed"}, {title: "Why"},
-		{title: "Results seen", least: 18}}, size: small.size, before: 1}
+	t := table{columns: []column{{title: "No.", align: right}, {title: "Date", least: 20}, {title: "What changed"},
+		{title: "Why"}, {title: "Results seen", least: 18}}, size: small.size, before: 1}
 	for _, m := range a.plan.Amendments {
 		seen := "no"
 		if m.ResultsSeen {
 			seen = "yes"
 		}
-		t.rows = append(t.rows, []cell{cellText(small, strconv.Itoa(m.Number)), cellText(small, m.Date), cellText(small, m.What),
-			cellText(small, m.Why), cellText(small, seen)})
+		t.rows = append(t.rows, []cell{cellText(small, strconv.Itoa(m.Number)), cellText(small, m.Date),
+			cellText(small, m.What), cellText(small, m.Why), cellText(small, seen)})
 	}
 	a.flow.add(a.section(1, "Amendments of the plan", "amendments")...)
 	a.flow.add(t.atoms()...)
@@ -107,7 +111,8 @@ func (a *appendix) amendments() {
 func (a *appendix) planPart() {
 	f := a.flow
 	f.add(a.section(0, "Study plan", "plan")...)
-	f.add(prose("The text of " + a.results.Plan.File + " as it was run. The digest of the plan is taken of its content, not of its layout.")...)
+	f.add(prose("The text of " + a.results.Plan.File + " as it was run. The digest of the plan is taken of its content, " +
+		"not of its layout.")...)
 	text := strings.TrimSuffix(strings.ReplaceAll(a.results.Plan.Text, "\r\n", "\n"), "\n")
 	const gutter = 9.0
 	numberStyle := code.in(soft)

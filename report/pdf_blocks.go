@@ -12,9 +12,12 @@ var (
 	titleStyle = style{face: bold, size: 17, colour: ink}
 )
 
+var headingStyles = [...]style{{face: bold, size: 13.5, colour: ink}, {face: bold, size: 10, colour: ink},
+	{face: bold, size: 8.6, colour: accent}}
+
 // A heading has a level from 0, a number or none, and is a target that the outline leads to.
 func heading(level int, number, title, name string) []atom {
-	s := [...]style{{face: bold, size: 13.5, colour: ink}, {face: bold, size: 10, colour: ink}, {face: bold, size: 8.6, colour: accent}}[level]
+	s := headingStyles[level]
 	before := [...]float64{9, 6.5, 4}[level]
 	x := leftEdge
 	if number != "" {

@@ -1,8 +1,8 @@
 package report
 
 // The appendix is first laid out as pages of marks, then written. So the number of pages is known before the first
-// footer, figures cannot leave a colour or a line width behind, and tests read what stands on a page. All lengths are in
-// millimetres from the upper left corner of the page, type sizes in points.
+// footer, figures cannot leave a colour or a line width behind, and tests read what stands on a page. All lengths are
+// in millimetres from the upper left corner of the page, type sizes in points.
 
 // A colour is red, green and blue.
 type colour struct{ r, g, b uint8 }

@@ -46,8 +46,8 @@ func (a *appendix) columns(i int) {
 	if i >= len(a.data.Tables) || a.data.Tables[i] == nil {
 		return
 	}
-	table1 := table{columns: []column{{title: "Column"}, {title: "Type"}, {title: "Unit"}, {title: "Missing values", align: right},
-		{title: "Note"}}, size: small.size, before: 1}
+	t := table{columns: []column{{title: "Column"}, {title: "Type"}, {title: "Unit"},
+		{title: "Missing values", align: right}, {title: "Note"}}, size: small.size, before: 1}
 	formulas := map[string]string{}
 	for _, d := range a.data.Tables[i].Source.Derive {
 		formulas[d.Name] = d.Formula
@@ -63,10 +63,11 @@ func (a *appendix) columns(i int) {
 		if c.Derived {
 			note = cell{runs: []run{{text: "derived: ", style: small}, {text: formulas[c.Name], style: code}}}
 		}
-		table1.rows = append(table1.rows, []cell{cellText(small, c.Name), cellText(small, string(c.Type)), cellText(small, orDash(c.Unit)),
-			cellText(small, grouped(int64(missing))), note})
+		t.rows = append(t.rows, []cell{cellText(small, c.Name), cellText(small, string(c.Type)),
+			cellText(small, orDash(c.Unit)), cellText(small, grouped(int64(missing))), note})
 	}
-	a.flow.add(tableWithCaption(caption(a.tableLabel(), "Columns of "+a.results.Sources[i].Name+" as read.", 4), table1)...)
+	over := caption(a.tableLabel(), "Columns of "+a.results.Sources[i].Name+" as read.", 4)
+	a.flow.add(tableWithCaption(over, t)...)
 }
 
 // tableWithCaption sets the caption above the table and keeps it with the first row.
@@ -96,7 +97,8 @@ func (a *appendix) exclusions(s *record.Source) {
 		t.rows = append(t.rows, []cell{cellText(code, e.Where), cellText(small, e.Because), cellText(small, e.By),
 			cellText(small, grouped(int64(len(e.Lines)))), cellText(small, lineRanges(e.Lines))})
 	}
-	a.flow.add(tableWithCaption(caption(a.tableLabel(), "Rows excluded from every analysis of "+s.Name+", with the reason.", 4), t)...)
+	over := caption(a.tableLabel(), "Rows excluded from every analysis of "+s.Name+", with the reason.", 4)
+	a.flow.add(tableWithCaption(over, t)...)
 }
 
 // lineRanges writes ascending line numbers, joining neighbours: 3, 17–19.
@@ -125,20 +127,21 @@ func lineRanges(lines []int) string {
 
 // ledger says for each statistic how its rows add up.
 func (a *appendix) ledger() {
-	t := table{columns: []column{{title: "Statistic"}, {title: "Source", most: 24}, {title: "Rows where", most: 46}, {title: "Read", align: right},
-		{title: "Used", align: right}, {title: "Excluded", align: right}, {title: "Missing", align: right}, {title: "Outside", align: right}},
+	t := table{columns: []column{{title: "Statistic"}, {title: "Source", most: 24}, {title: "Rows where", most: 46},
+		{title: "Read", align: right}, {title: "Used", align: right}, {title: "Excluded", align: right},
+		{title: "Missing", align: right}, {title: "Outside", align: right}},
 		size: small.size, before: 1}
 	for i := range a.results.Statistics {
 		s := &a.results.Statistics[i]
-		row := []cell{{runs: []run{{text: s.Label, style: small.in(accent), to: statisticName(i)}}}, cellText(small, s.Source),
-			cellText(code, orDash(s.Where))}
+		row := []cell{{runs: []run{{text: s.Label, style: small.in(accent), to: statisticName(i)}}},
+			cellText(small, s.Source), cellText(code, orDash(s.Where))}
 		for _, n := range []int{s.Rows.Read, s.Rows.Used, s.Rows.Excluded, s.Rows.Missing, s.Rows.Outside} {
 			row = append(row, cellText(small, grouped(int64(n))))
 		}
 		t.rows = append(t.rows, row)
 	}
 	a.flow.add(a.section(1, "Row ledger", "ledger")...)
-	a.flow.add(prose("Of the rows read for a statistic, used + excluded + missing + outside = read. Missing: a needed column has no value. " +
-		"Outside: the condition or the comparison of the statistic does not select the row.")...)
+	a.flow.add(prose("Of the rows read for a statistic, used + excluded + missing + outside = read. Missing: a needed " +
+		"column has no value. Outside: the condition or the comparison of the statistic does not select the row.")...)
 	a.flow.add(tableWithCaption(caption(a.tableLabel(), "Rows of each statistic.", 3), t)...)
 }

@@ -9,7 +9,8 @@ const (
 	measure    = rightEdge - leftEdge
 )
 
-// An atom is a piece of the text that is never divided between pages: a line of a paragraph, a row of a table, a figure.
+// An atom is a piece of the text that is never divided between pages: a line of a paragraph, a row of a table, a
+// figure.
 type atom struct {
 	before float64 // white space above, dropped at the top of a page
 	height float64

@@ -13,8 +13,8 @@ import (
 //	_( … )   an index; _x for a single character
 //	₍ … ₎    an index in parentheses, which may hold characters that have no lowered form
 //
-// On its right a slash takes one factor. Parentheses that a bar or a radical makes needless are dropped. Two blanks after
-// a comma or a semicolon begin a new line. Whatever does not follow these rules is set as it stands.
+// On its right a slash takes one factor. Parentheses that a bar or a radical makes needless are dropped. Two blanks
+// after a comma or a semicolon begin a new line. Whatever does not follow these rules is set as it stands.
 
 // A piece is part of a formula.
 type piece struct {
@@ -56,8 +56,8 @@ func readFormula(text string) (pieces []piece, ok bool) {
 	return pieces, ok && len(rest) == 0
 }
 
-// readPieces reads up to the closing sign, or to the end if there is none. Within exponents and indices everything stays
-// on one line.
+// readPieces reads up to the closing sign, or to the end if there is none. Within exponents and indices everything
+// stays on one line.
 func readPieces(signs []string, closing string, small bool) (out []piece, rest []string, ok bool) {
 	for len(signs) > 0 {
 		sign := signs[0]
@@ -106,8 +106,9 @@ func normalForm(in []piece) []piece {
 	return out
 }
 
-var lowered = strings.NewReplacer("₀", "0", "₁", "1", "₂", "2", "₃", "3", "₄", "4", "₅", "5", "₆", "6", "₇", "7", "₈", "8",
-	"₉", "9", "₊", "+", "₋", "−", "ᵢ", "i", "ⱼ", "j", "ₖ", "k", "ₗ", "l", "ₘ", "m", "ₙ", "n", "ₚ", "p", "ᵤ", "u", "ᵥ", "v", "·", "·")
+var lowered = strings.NewReplacer("₀", "0", "₁", "1", "₂", "2", "₃", "3", "₄", "4", "₅", "5", "₆", "6", "₇", "7",
+	"₈", "8", "₉", "9", "₊", "+", "₋", "−", "ᵢ", "i", "ⱼ", "j", "ₖ", "k", "ₗ", "l", "ₘ", "m", "ₙ", "n", "ₚ", "p", "ᵤ", "u",
+	"ᵥ", "v")
 
 // bind joins exponents, indices and, unless they are small, radicals and fractions on one level.
 func bind(in []piece, small bool) []piece {
@@ -270,15 +271,7 @@ func setPiece(c piece, s style) box {
 		return box{w: inner.w + float64(0.04*em), up: max(0, inner.up-fall), down: inner.down + fall,
 			draw: func(p *page, x, y float64) { inner.draw(p, x+float64(0.02*em), y+fall) }}
 	case pieceRoot:
-		inner := setPieces(c.inner, s)
-		head, air := float64(0.62*em), float64(0.14*em)
-		top := inner.up + air
-		return box{w: head + inner.w + float64(0.12*em), up: top + float64(0.08*em), down: inner.down, draw: func(p *page, x, y float64) {
-			p.line(rule, spot{x + float64(0.04*em), y - float64(0.28*em)}, spot{x + float64(0.16*em), y - float64(0.36*em)})
-			p.line(pen{s.colour, float64(0.09 * em), nil}, spot{x + float64(0.16*em), y - float64(0.36*em)}, spot{x + float64(0.34*em), y + float64(inner.down*0.8)})
-			p.line(rule, spot{x + float64(0.34*em), y + float64(inner.down*0.8)}, spot{x + head - float64(0.06*em), y - top}, spot{x + head + inner.w + float64(0.06*em), y - top})
-			inner.draw(p, x+head, y)
-		}}
+		return setRoot(setPieces(c.inner, s), s)
 	case pieceFraction:
 		smaller.size *= 0.94
 		num, den := setPieces(c.inner, smaller), setPieces(c.below, smaller)
@@ -293,6 +286,23 @@ func setPiece(c piece, s style) box {
 			}}
 	}
 	return setSigns(c.text, s)
+}
+
+// setRoot puts a radical over what is set.
+func setRoot(inner box, s style) box {
+	em := float64(s.size * point)
+	thin, thick := pen{s.colour, float64(0.05 * em), nil}, pen{s.colour, float64(0.09 * em), nil}
+	head, top := float64(0.62*em), inner.up+float64(0.14*em)
+	foot := float64(inner.down * 0.8)
+	return box{w: head + inner.w + float64(0.12*em), up: top + float64(0.08*em), down: inner.down,
+		draw: func(p *page, x, y float64) {
+			hook, valley := spot{x + float64(0.16*em), y - float64(0.36*em)}, spot{x + float64(0.34*em), y + foot}
+			p.line(thin, spot{x + float64(0.04*em), y - float64(0.28*em)}, hook)
+			p.line(thick, hook, valley)
+			p.line(thin, valley, spot{x + head - float64(0.06*em), y - top},
+				spot{x + head + inner.w + float64(0.06*em), y - top})
+			inner.draw(p, x+head, y)
+		}}
 }
 
 // bracket sets a parenthesis as tall as what it encloses.

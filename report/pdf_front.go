@@ -68,7 +68,8 @@ func (a *appendix) verdict() {
 
 // decisions are the criteria, each with its sentence.
 func (a *appendix) decisions() {
-	t := table{columns: []column{{title: "Verdict", least: 25, most: 25}, {title: "Criterion and decision"}}, size: body.size, before: 4}
+	t := table{columns: []column{{title: "Verdict", least: 25, most: 25}, {title: "Criterion and decision"}},
+		size: body.size, before: 4}
 	for i := range a.results.Statistics {
 		s := &a.results.Statistics[i]
 		for j := range s.Accept {
@@ -89,7 +90,8 @@ const mostDoubts = 6
 
 // worst lists the gravest advisories.
 func (a *appendix) worst() {
-	t := table{columns: []column{{title: "Advisory", least: 25, most: 25}, {title: "Statistic and finding"}}, size: body.size, before: 5}
+	t := table{columns: []column{{title: "Advisory", least: 25, most: 25}, {title: "Statistic and finding"}},
+		size: body.size, before: 5}
 	more := 0
 	for _, severity := range []string{"stop", "caution"} {
 		for i := range a.results.Statistics {
@@ -113,7 +115,8 @@ func (a *appendix) worst() {
 	a.flow.add(t.atoms()...)
 	if more > 0 {
 		a.flow.add(paragraph([]run{{text: strconv.Itoa(more) + " more of these stand in ", style: small},
-			{text: "the list of cautions", style: small.in(accent), to: "limits"}, {text: ".", style: small}}, leftEdge, measure, 1.5)...)
+			{text: "the list of cautions", style: small.in(accent), to: "limits"}, {text: ".", style: small}}, leftEdge,
+			measure, 1.5)...)
 	}
 }
 

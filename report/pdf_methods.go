@@ -51,7 +51,8 @@ func (a *appendix) methods(title, name string, all []methodText) {
 			atoms = append(atoms, paragraph(plainRun(quiet, m.where+full(m.where)), leftEdge, measure, 1)...)
 		}
 		if m.caution != "" {
-			atoms = append(atoms, paragraph([]run{{text: "Limits. ", style: smallBold}, {text: m.caution, style: small}}, leftEdge, measure, 1)...)
+			atoms = append(atoms, paragraph([]run{{text: "Limits. ", style: smallBold}, {text: m.caution, style: small}},
+				leftEdge, measure, 1)...)
 		}
 		if height(atoms) < 0.35*(bottomEdge-topEdge) {
 			atoms = together(atoms)

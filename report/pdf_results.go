@@ -19,7 +19,8 @@ func (a *appendix) resultsPart() {
 
 // overview draws the criteria on a common scale if there are several.
 func (a *appendix) overview() {
-	o := overview{outside: "outside the criterion", within: "within the criterion", axis: "distance from the criterion, in standard errors"}
+	o := overview{outside: "outside the criterion", within: "within the criterion",
+		axis: "distance from the criterion, in standard errors"}
 	for i := range a.results.Statistics {
 		s := &a.results.Statistics[i]
 		for j := range s.Accept {
@@ -30,7 +31,8 @@ func (a *appendix) overview() {
 			}
 			least := c.Criterion == lowerAtLeast
 			r := overviewRow{verdict: plainRun(smallBold, c.Verdict), sign: verdictSymbol(c.Verdict),
-				estimate: distance(s.Estimate, s.StandardError, limit, least), bound: distance(c.Bound, s.StandardError, limit, least)}
+				estimate: distance(s.Estimate, s.StandardError, limit, least),
+				bound:    distance(c.Bound, s.StandardError, limit, least)}
 			r.label = []run{{text: s.Label, style: style{face: sans, size: 8, colour: accent}, to: statisticName(i)},
 				{text: ", " + criterionText(s, c), style: style{face: sans, size: 8, colour: soft}}}
 			switch {
@@ -51,8 +53,9 @@ func (a *appendix) overview() {
 		atoms = together(atoms)
 	}
 	atoms[len(atoms)-1].keep = true
-	atoms = append(atoms, caption(a.figureLabel(), "Distance of the estimate (diamond) and of the bound that carries the verdict (stroke) from each criterion, "+
-		"in standard errors of the statistic; the acceptable side is on the right. An arrow stands for a value beyond the scale.", 1)...)
+	atoms = append(atoms, caption(a.figureLabel(), "Distance of the estimate (diamond) and of the bound that carries the "+
+		"verdict (stroke) from each criterion, in standard errors of the statistic; the acceptable side is on the right. "+
+		"An arrow stands for a value beyond the scale.", 1)...)
 	a.flow.add(atoms...)
 }
 
@@ -85,11 +88,13 @@ func (a *appendix) result(i int) {
 	for j := range s.Accept {
 		c := &s.Accept[j]
 		t := table{columns: []column{{least: 25, most: 25}, {}}, size: body.size, before: 2.5, rows: [][]cell{
-			{{runs: plainRun(bodyBold, c.Verdict), symbol: verdictSymbol(c.Verdict)}, cellText(body, decisionSentence(a.results, s, c))}}}
+			{{runs: plainRun(bodyBold, c.Verdict), symbol: verdictSymbol(c.Verdict)},
+				cellText(body, decisionSentence(a.results, s, c))}}}
 		atoms = append(atoms, t.atoms()...)
 	}
 	if s.Estimate == nil {
-		atoms = append(atoms, rich(run{text: "No estimate: ", style: bodyBold}, run{text: s.EstimateReason + full(s.EstimateReason), style: body})...)
+		atoms = append(atoms, rich(run{text: "No estimate: ", style: bodyBold},
+			run{text: s.EstimateReason + full(s.EstimateReason), style: body})...)
 	} else {
 		atoms = append(atoms, estimates(a.results, s)...)
 	}
@@ -111,20 +116,22 @@ func (a *appendix) result(i int) {
 
 // estimates are the figures of a statistic beside its intervals.
 func estimates(r *record.Results, s *record.Statistic) []atom {
-	t := table{columns: []column{{title: "Estimate", align: right}, {title: "Standard error", align: right}, {title: "Bias", align: right},
-		{title: "Rows", align: right}, {title: "Units", align: right}, {title: "Resamples", align: right}, {title: "Without a value", align: right},
-		{title: "Unit"}},
+	t := table{columns: []column{{title: "Estimate", align: right}, {title: "Standard error", align: right},
+		{title: "Bias", align: right}, {title: "Rows", align: right}, {title: "Units", align: right},
+		{title: "Resamples", align: right}, {title: "Without a value", align: right}, {title: "Unit"}},
 		size: small.size, before: 4, tight: true}
 	t.rows = [][]cell{{cellText(smallBold, sayEstimate(r, s)), cellText(small, sayStandardError(s)),
 		cellText(small, sayBias(s)), cellText(small, grouped(int64(s.N))), cellText(small, grouped(int64(s.Design.Units))),
-		cellText(small, grouped(int64(s.Resamples))), cellText(small, grouped(int64(s.FailedResamples))), cellText(small, orDash(s.Unit))}}
+		cellText(small, grouped(int64(s.Resamples))), cellText(small, grouped(int64(s.FailedResamples))),
+		cellText(small, orDash(s.Unit))}}
 	atoms := t.atoms()
 	if len(s.Failures) > 0 {
 		var parts []string
 		for _, one := range s.Failures {
 			parts = append(parts, grouped(int64(one.Count))+" × "+one.Reason)
 		}
-		atoms = append(atoms, paragraph(plainRun(quiet, "Resamples without a value: "+strings.Join(parts, ", ")+"."), leftEdge, measure, 1)...)
+		atoms = append(atoms, paragraph(plainRun(quiet, "Resamples without a value: "+strings.Join(parts, ", ")+"."),
+			leftEdge, measure, 1)...)
 	}
 	return atoms
 }
@@ -135,7 +142,8 @@ func groups(r *record.Results, s *record.Statistic) []atom {
 	if c == nil {
 		return nil
 	}
-	t := table{columns: []column{{title: "Group"}, {title: "Estimate", align: decimal}, {title: "Rows", align: right}, {title: "Units", align: right}},
+	t := table{columns: []column{{title: "Group"}, {title: "Estimate", align: decimal}, {title: "Rows", align: right},
+		{title: "Units", align: right}},
 		size: small.size, before: 4, tight: true}
 	for g := range c.Of {
 		t.rows = append(t.rows, []cell{cellText(small, c.By+" "+c.Of[g]), cellText(small, sayGroup(r, s, g)),
@@ -156,10 +164,12 @@ func intervals(r *record.Results, s *record.Statistic) []atom {
 	}
 	columns := []column{{title: "Interval"}, {title: "Confidence", align: right}}
 	if lower {
-		columns = append(columns, column{title: "Lower limit", align: decimal}, column{title: "Monte-Carlo error", align: decimal})
+		columns = append(columns, column{title: "Lower limit", align: decimal},
+			column{title: "Monte-Carlo error", align: decimal})
 	}
 	if upper {
-		columns = append(columns, column{title: "Upper limit", align: decimal}, column{title: "Monte-Carlo error", align: decimal})
+		columns = append(columns, column{title: "Upper limit", align: decimal},
+			column{title: "Monte-Carlo error", align: decimal})
 	}
 	columns = append(columns, column{title: "Use"})
 	t := table{columns: columns, size: small.size, before: 4}
@@ -186,7 +196,8 @@ func intervals(r *record.Results, s *record.Statistic) []atom {
 	}
 	atoms := t.atoms()
 	if len(steps) > 0 {
-		atoms = append(atoms, paragraph(plainRun(quiet, "Intermediate figures. "+strings.Join(steps, " ")), leftEdge, measure, 1.2)...)
+		atoms = append(atoms, paragraph(plainRun(quiet, "Intermediate figures. "+strings.Join(steps, " ")), leftEdge,
+			measure, 1.2)...)
 	}
 	return atoms
 }
@@ -198,7 +209,8 @@ func findings(s *record.Statistic) []atom {
 	}
 	t := table{columns: []column{{least: 25, most: 25}, {}}, size: small.size, before: 3}
 	for _, v := range s.Advisories {
-		t.rows = append(t.rows, []cell{{runs: plainRun(smallBold, v.Severity), symbol: severitySymbol(v.Severity)}, cellText(small, v.Text)})
+		t.rows = append(t.rows, []cell{{runs: plainRun(smallBold, v.Severity), symbol: severitySymbol(v.Severity)},
+			cellText(small, v.Text)})
 	}
 	return t.atoms()
 }
@@ -227,7 +239,8 @@ func (a *appendix) distribution(s *record.Statistic) []atom {
 		if err != nil {
 			continue
 		}
-		fig.criteria = append(fig.criteria, marker{value: &limit, label: "criterion " + criterionText(s, c), least: c.Criterion == lowerAtLeast})
+		fig.criteria = append(fig.criteria, marker{value: &limit, label: "criterion " + criterionText(s, c),
+			least: c.Criterion == lowerAtLeast})
 	}
 	atoms := []atom{{before: 4.5, height: fig.height(), keep: true, draw: fig.draw}}
 	return together(append(atoms, caption(a.figureLabel(), figureCaption(s), 1)...))

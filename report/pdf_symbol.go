@@ -81,7 +81,8 @@ func (s symbol) draw(p *page, x, y, r float64) {
 		p.line(white, at(0, -0.4), at(0, 0.3))
 		p.line(white, at(0, 0.46), at(0, 0.66))
 	case symbolStop:
-		p.fill(c, at(-0.42, -1), at(0.42, -1), at(1, -0.42), at(1, 0.42), at(0.42, 1), at(-0.42, 1), at(-1, 0.42), at(-1, -0.42))
+		p.fill(c, at(-0.42, -1), at(0.42, -1), at(1, -0.42), at(1, 0.42), at(0.42, 1), at(-0.42, 1),
+			at(-1, 0.42), at(-1, -0.42))
 		p.line(pen{paper, r * 0.36, nil}, at(-0.5, 0), at(0.5, 0))
 	}
 }

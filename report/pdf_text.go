@@ -90,8 +90,8 @@ func wrap(runs []run, width float64) []textLine {
 	return lines
 }
 
-// breakInside returns how many glyphs of a word too wide for a line stand before the break; at least one. The glyph that
-// follows the word does not combine with it.
+// breakInside returns how many glyphs of a word too wide for a line stand before the break; at least one. The glyph
+// that follows the word does not combine with it.
 func breakInside(word []glyph) int {
 	for n := len(word); n > len(word)*2/3 && n > 1; n-- {
 		if strings.ContainsRune("-/_.,;:·=+)", word[n-1].r) && (n == len(word) || !unicode.Is(unicode.M, word[n].r)) {

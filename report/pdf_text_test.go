@@ -19,7 +19,8 @@ func TestWidthsAgreeWithLibrary(t *testing.T) {
 	f.AddPage()
 	for i, name := range familyName {
 		f.SetFont(name, "", 9)
-		for _, text := range []string{"The quick brown fox", "x̄ = Σxᵢ/n ≤ ½√(1−α)", "Прочность, αντοχή, Zażółć", "0123456789.,−", "⟨U+6F22⟩"} {
+		for _, text := range []string{"The quick brown fox", "x̄ = Σxᵢ/n ≤ ½√(1−α)", "Прочность, αντοχή, Zażółć",
+			"0123456789.,−", "⟨U+6F22⟩"} {
 			got, want := face(i).width(text, 9), f.GetStringWidth(text)
 			// The library rounds each width to whole thousandths of the size in its own way: one unit a character.
 			if tol := 9 * point / 1000 * float64(len([]rune(text))); math.Abs(got-want) > tol {

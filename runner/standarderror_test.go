@@ -33,8 +33,8 @@ func TestStandardErrorOfEstimate(t *testing.T) {
 		want float64
 	}{
 		{"mean, s/√n", mouse, "", treatment},
-		{"difference of groups of 7 and 9", with("statistic: mean, of: days, compare: {by: group, of: [treatment, control], as: difference}"),
-			"", difference},
+		{"difference of groups of 7 and 9",
+			with("statistic: mean, of: days, compare: {by: group, of: [treatment, control], as: difference}"), "", difference},
 		{"mean over two strata", with("statistic: mean, of: days"), "row, strata: group", stratified},
 		// Six clusters of three: the bootstrap standard error has divisor 6, this one 5.
 		{"mean of whole clusters", rail, "rail", number("rail-cluster-boot-se", "se") * math.Sqrt(6.0/5)},
@@ -55,9 +55,9 @@ func TestStandardErrorOfEstimate(t *testing.T) {
 	}
 }
 
-// With groups of 7 and 9 the acceleration of a difference of means is ⅙ Σ_h Σ l³/n_h³ / (Σ_h Σ l²/n_h²)^(3/2), where l is
-// the deviation from the mean of the group, with its sign turned in the second one. Davison and Hinkley 1997, section
-// 5.3.2, cited from memory; written out here for the data.
+// With groups of 7 and 9 the acceleration of a difference of means is ⅙ Σ_h Σ l³/n_h³ / (Σ_h Σ l²/n_h²)^(3/2), where l
+// is the deviation from the mean of the group, with its sign turned in the second one. Davison and Hinkley 1997,
+// section 5.3.2, cited from memory; written out here for the data.
 func TestAccelerationOfTwoGroups(t *testing.T) {
 	var squares, cubes float64
 	for group, sign := range map[string]float64{"treatment": 1, "control": -1} {

@@ -39,8 +39,8 @@ func parameter(t testing.TB, r Result, name string) float64 {
 	return 0
 }
 
-// TestReference checks the classical and exact methods against two independent programs; the source of each figure is in
-// the case and printed when it fails.
+// TestReference checks the classical and exact methods against two independent programs; the source of each figure is
+// in the case and printed when it fails.
 func TestReference(t *testing.T) {
 	checks := map[string]func(*testing.T, reference.Case){}
 	column := func(t *testing.T, c reference.Case) []float64 { return reference.Data(t, c.Data).Numbers(c.Columns[0]) }
@@ -51,8 +51,9 @@ func TestReference(t *testing.T) {
 			r := orderStatistic.Find(input(t, 0, x...))
 			c.Compare(t, reference.Figures{"lower": r.Lower, "upper": r.Upper}, 0)
 			k, attained := c.Number(t, "k"), c.Number(t, "actual_coverage")
-			if low, high := parameter(t, r, "lower rank"), parameter(t, r, "upper rank"); low != k || high != float64(len(x))+1-k {
-				t.Errorf("%s: ranks %v and %v, want %v and %v", c.ID, low, high, k, float64(len(x))+1-k)
+			low, high, mirror := parameter(t, r, "lower rank"), parameter(t, r, "upper rank"), float64(len(x))+1-k
+			if low != k || high != mirror {
+				t.Errorf("%s: ranks %v and %v, want %v and %v", c.ID, low, high, k, mirror)
 			}
 			if math.Abs(r.Attained-attained) > 1e-14 {
 				t.Errorf("%s: attained confidence %.17g, want %.17g", c.ID, r.Attained, attained)
@@ -172,8 +173,8 @@ func TestMedianRanks(t *testing.T) {
 	for _, tt := range tests {
 		r := orderStatistic.Find(input(t, 0, upTo(tt.n)...))
 		if r.Lower != tt.lower || r.Upper != tt.high || math.Abs(r.Attained-tt.attained) > 1e-15 {
-			t.Errorf("n %d: %v to %v attained %.17g, want %v to %v, %.17g", tt.n, r.Lower, r.Upper, r.Attained, tt.lower, tt.high,
-				tt.attained)
+			t.Errorf("n %d: %v to %v attained %.17g, want %v to %v, %.17g", tt.n, r.Lower, r.Upper, r.Attained, tt.lower,
+				tt.high, tt.attained)
 		}
 	}
 	if r := orderStatistic.Find(input(t, 0, upTo(5)...)); r.Reason == "" {
@@ -191,9 +192,9 @@ func TestMedianRanks(t *testing.T) {
 	}
 }
 
-// Clopper and Pearson at the edges have closed forms: 0 of n has the upper limit 1 − (α)^(1/n), n of n mirrors it. For 0
-// of 10 at 95 % two-sided it is 0.3085 (in every table of the method; from memory), and 0 of 59 has the one-sided upper
-// 95 % bound 0.0495, below 5 %.
+// Clopper and Pearson at the edges have closed forms: 0 of n has the upper limit 1 − (α)^(1/n), n of n mirrors it. For
+// 0 of 10 at 95 % two-sided it is 0.3085 (in every table of the method; from memory), and 0 of 59 has the one-sided
+// upper 95 % bound 0.0495, below 5 %.
 func TestClopperPearsonEdges(t *testing.T) {
 	for _, n := range []int{1, 2, 10, 59, 300} {
 		for _, bound := range []spec.Bound{spec.TwoSided, spec.Upper, spec.Lower} {

@@ -88,8 +88,8 @@ func TestInfluenceIsDerivative(t *testing.T) {
 	}
 }
 
-// The influence values of the repeatability, summed over a whole level, are the derivative with respect to the weight of
-// that level: the pooled variance is the ratio of two sums over levels.
+// The influence values of the repeatability, summed over a whole level, are the derivative with respect to the weight
+// of that level: the pooled variance is the ratio of two sums over levels.
 func TestRepeatabilityInfluence(t *testing.T) {
 	x := []float64{1, 2, 4, 7, 7.5, 3, 9, 9.25, 8.5, 9.5}
 	codes := []int32{0, 0, 0, 1, 1, 2, 3, 3, 3, 3} // level 2 has one reading

@@ -147,8 +147,8 @@ func TestOrderOfRows(t *testing.T) {
 	}
 }
 
-// On a drawn sample everything is as on a plain sample of the same values, bit for bit, and Sorted is sorted; one Sample
-// serves draws of different length.
+// On a drawn sample everything is as on a plain sample of the same values, bit for bit, and Sorted is sorted; one
+// Sample serves draws of different length.
 func TestDrawnIsPlain(t *testing.T) {
 	r := rand.New(rand.NewPCG(3, 1))
 	for _, u := range subjects {
@@ -273,7 +273,8 @@ func TestDecimalRanks(t *testing.T) {
 	if got := estimate(t, bind(t, "quantile", "0.1", "1"), sampleOf(x[:30])); got != 9 {
 		t.Errorf("quantile 0.1 of 30 is %v, want the third value, 9", got)
 	}
-	if got, want := estimate(t, bind(t, "trimmed mean", "0.29"), sampleOf(x)), stat.Mean(x[29:71], nil); !near(got, want, 1e-14) {
+	want := stat.Mean(x[29:71], nil)
+	if got := estimate(t, bind(t, "trimmed mean", "0.29"), sampleOf(x)); !near(got, want, 1e-14) {
 		t.Errorf("mean trimmed by 0.29 of 100 is %v, want %v", got, want)
 	}
 }

@@ -98,10 +98,12 @@ func TestDecisionSentence(t *testing.T) {
 		{name: "difference not met", bound: spec.Upper, as: "difference", unit: "N", rule: absolute, estimate: num(0.4),
 			accept: most("0", num(0.6), "0.6", "not met", wrongSide),
 			want: "Median (difference, aged less fresh): the upper 95 % confidence bound is 0.600 N; the criterion, at most " +
-				"0 N, is not met (absolute comparison, ASTM E29): the estimate, 0.400 N, and the bound are both on its wrong side."},
+				"0 N, is not met (absolute comparison, ASTM E29): the estimate, 0.400 N, and the bound are both on its wrong " +
+				"side."},
 		{name: "ratio", bound: spec.Lower, as: "ratio", rule: absolute, estimate: num(0.93),
 			accept: least("0.85", num(0.88), "0.88", "met", rightSide),
-			want: "Median (ratio, aged over fresh): the lower 95 % confidence bound is 0.880; the criterion, at least 0.85, is " +
+			want: "Median (ratio, aged over fresh): the lower 95 % confidence bound is 0.880; the criterion, at least 0.85, " +
+				"is " +
 				"met (absolute comparison, ASTM E29)."},
 		{name: "ratio not shown", bound: spec.TwoSided, as: "ratio", rule: absolute, estimate: num(1.1),
 			accept: most("1.25", num(1.31), "1.31", "not shown", between),
@@ -110,16 +112,19 @@ func TestDecisionSentence(t *testing.T) {
 				"side, the bound is not."},
 		{name: "rounded met", bound: spec.Lower, unit: "N", rule: rounded, estimate: num(1.41),
 			accept: least("1.20", num(1.196), "1.20", "met", rightSide),
-			want: "Median: the lower 95 % confidence bound is 1.196 N; the criterion, at least 1.20 N, is met (compared as 1.20 " +
+			want: "Median: the lower 95 % confidence bound is 1.196 N; the criterion, at least 1.20 N, is met (compared as " +
+				"1.20 " +
 				"after rounding to the decimals of the criterion, ASTM E29)."},
 		{name: "rounded not shown", bound: spec.Lower, unit: "N", rule: rounded, estimate: num(1.41),
 			accept: least("1.20", num(1.1949), "1.19", "not shown", between),
-			want: "Median: the lower 95 % confidence bound is 1.1949 N; the criterion, at least 1.20 N, is not shown (compared " +
+			want: "Median: the lower 95 % confidence bound is 1.1949 N; the criterion, at least 1.20 N, is not shown " +
+				"(compared " +
 				"as 1.19 after rounding to the decimals of the criterion, ASTM E29): the estimate, 1.4100 N, is on its right " +
 				"side, the bound is not."},
 		{name: "rounded not met", bound: spec.Upper, unit: "N", rule: rounded, estimate: num(1.9),
 			accept: most("1.0", num(2.04), "2.0", "not met", wrongSide),
-			want: "Median: the upper 95 % confidence bound is 2.040 N; the criterion, at most 1.0 N, is not met (compared as 2.0 " +
+			want: "Median: the upper 95 % confidence bound is 2.040 N; the criterion, at most 1.0 N, is not met (compared as " +
+				"2.0 " +
 				"after rounding to the decimals of the criterion, ASTM E29): the estimate, 1.900 N, and the bound are both on " +
 				"its wrong side."},
 		{name: "rounded negative", bound: spec.Lower, unit: "K", rule: rounded, estimate: num(-0.2),
@@ -137,19 +142,23 @@ func TestDecisionSentence(t *testing.T) {
 				"statistic) decided, as the plan says: stopped by few units."},
 		{name: "stopped", bound: spec.Lower, unit: "N", rule: absolute, estimate: num(1.41), undecided: true,
 			accept: least("1.20", nil, "", "not shown", "stopped by pseudo-replication"),
-			want: "Median: the lower 95 % confidence bound carries no verdict (stopped by pseudo-replication); the criterion, at " +
+			want: "Median: the lower 95 % confidence bound carries no verdict (stopped by pseudo-replication); the criterion, " +
+				"at " +
 				"least 1.20 N, is not shown."},
 		{name: "stopped, two-sided", bound: spec.TwoSided, unit: "N", rule: absolute, estimate: num(1.41), undecided: true,
 			accept: most("1.60", nil, "", "not shown", "stopped by few units, failed resamples"),
-			want: "Median: the upper limit of the two-sided 95 % confidence interval carries no verdict (stopped by few units, " +
+			want: "Median: the upper limit of the two-sided 95 % confidence interval carries no verdict (stopped by few " +
+				"units, " +
 				"failed resamples); the criterion, at most 1.60 N, is not shown."},
 		{name: "no limit", bound: spec.Upper, unit: "N", rule: absolute, estimate: num(1.41), undecided: true,
 			accept: most("1.60", nil, "", "not shown", "no studentized limit: the standard error is 0"),
-			want: "Median: the upper 95 % confidence bound carries no verdict (no studentized limit: the standard error is 0); the " +
+			want: "Median: the upper 95 % confidence bound carries no verdict (no studentized limit: the standard error is " +
+				"0); the " +
 				"criterion, at most 1.60 N, is not shown."},
 		{name: "no limit, difference", bound: spec.Lower, as: "difference", unit: "N", rule: absolute, estimate: num(1.41),
 			undecided: true, accept: least("0", nil, "", "not shown", "no bca limit: too few resamples"),
-			want: "Median (difference, aged less fresh): the lower 95 % confidence bound carries no verdict (no bca limit: too few " +
+			want: "Median (difference, aged less fresh): the lower 95 % confidence bound carries no verdict (no bca limit: " +
+				"too few " +
 				"resamples); the criterion, at least 0 N, is not shown."},
 		{name: "no estimate", bound: spec.Lower, unit: "N", rule: absolute,
 			accept: least("0", nil, "", "not shown", "there is no estimate: no spread in the observations"), undecided: true,
@@ -209,10 +218,13 @@ func TestTwoCriteria(t *testing.T) {
 	r := &rec.Results
 	s := &r.Statistics[1]
 	want := []string{
-		"Loss of median peel strength by ageing (difference, aged less fresh): the lower limit of the two-sided 95 % confidence " +
-			"interval is −0.17 N/15mm; the criterion, at least −0.15 N/15mm, is not shown (absolute comparison, ASTM E29): the " +
+		"Loss of median peel strength by ageing (difference, aged less fresh): the lower limit of the two-sided 95 % " +
+			"confidence " +
+			"interval is −0.17 N/15mm; the criterion, at least −0.15 N/15mm, is not shown (absolute comparison, ASTM E29): " +
+			"the " +
 			"estimate, −0.11 N/15mm, is on its right side, the bound is not.",
-		"Loss of median peel strength by ageing (difference, aged less fresh): the upper limit of the two-sided 95 % confidence " +
+		"Loss of median peel strength by ageing (difference, aged less fresh): the upper limit of the two-sided 95 % " +
+			"confidence " +
 			"interval is −0.05 N/15mm; the criterion, at most 0.15 N/15mm, is met (absolute comparison, ASTM E29).",
 	}
 	for i := range s.Accept {
@@ -234,28 +246,35 @@ func TestDesignText(t *testing.T) {
 			"The resampling unit is the single row. Rows are drawn with replacement, 58 from 58."},
 		{"units in equal strata", record.Design{Unit: []string{"pouch"}, By: []string{"lot"},
 			Strata: strata(record.Stratum{Name: "A", Units: 10}, record.Stratum{Name: "B", Units: 10})}, nil,
-			"The resampling unit is pouch. Whole units are drawn with replacement, 10 from 10 within each lot (A; B); all rows of " +
+			"The resampling unit is pouch. Whole units are drawn with replacement, 10 from 10 within each lot (A; B); all " +
+				"rows of " +
 				"a drawn pouch come along."},
 		{"units in unequal strata", record.Design{Unit: []string{"pouch"}, By: []string{"lot"},
 			Strata: strata(record.Stratum{Name: "A", Units: 10}, record.Stratum{Name: "B", Units: 9})}, nil,
-			"The resampling unit is pouch. Whole units are drawn with replacement, within each lot: A 10 from 10; B 9 from 9; all " +
+			"The resampling unit is pouch. Whole units are drawn with replacement, within each lot: A 10 from 10; B 9 from 9; " +
+				"all " +
 				"rows of a drawn pouch come along."},
 		{"nested to the row", record.Design{Unit: []string{"laboratory", "day", "row"},
 			Strata: strata(record.Stratum{Units: 8})}, nil,
-			"The outermost resampling unit is laboratory. Units are drawn with replacement, 8 from 8; within each drawn laboratory " +
+			"The outermost resampling unit is laboratory. Units are drawn with replacement, 8 from 8; within each drawn " +
+				"laboratory " +
 				"its units of day are drawn with replacement, as many as it has; within each drawn day its rows are drawn with " +
 				"replacement, as many as it has."},
-		{"nested to a unit", record.Design{Unit: []string{"laboratory", "day"}, Strata: strata(record.Stratum{Units: 8})}, nil,
-			"The outermost resampling unit is laboratory. Units are drawn with replacement, 8 from 8; within each drawn laboratory " +
+		{"nested to a unit", record.Design{Unit: []string{"laboratory", "day"}, Strata: strata(record.Stratum{Units: 8})},
+			nil,
+			"The outermost resampling unit is laboratory. Units are drawn with replacement, 8 from 8; within each drawn " +
+				"laboratory " +
 				"its units of day are drawn with replacement, as many as it has; all rows of a drawn day come along."},
 		{"groups apart", record.Design{Unit: []string{"row"},
 			Strata: strata(record.Stratum{Name: "aged", Units: 20}, record.Stratum{Name: "fresh", Units: 22})},
 			&record.Compare{By: "arm", Of: [2]string{"aged", "fresh"}},
-			"The resampling unit is the single row. Rows are drawn with replacement, within each group: aged 20 from 20; fresh 22 " +
+			"The resampling unit is the single row. Rows are drawn with replacement, within each group: aged 20 from 20; " +
+				"fresh 22 " +
 				"from 22. No unit holds rows of both groups (arm aged and fresh), so each group is drawn by itself."},
 		{"pairs", record.Design{Unit: []string{"subject"}, Strata: strata(record.Stratum{Units: 12})},
 			&record.Compare{By: "arm", Of: [2]string{"aged", "fresh"}, Paired: true},
-			"The resampling unit is subject. Whole units are drawn with replacement, 12 from 12; all rows of a drawn subject come " +
+			"The resampling unit is subject. Whole units are drawn with replacement, 12 from 12; all rows of a drawn subject " +
+				"come " +
 				"along. Units hold rows of both groups (arm aged and fresh), so the groups are drawn jointly, as pairs."},
 	}
 	for _, tt := range tests {

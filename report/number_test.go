@@ -10,8 +10,8 @@ import (
 )
 
 // The rule is that of JCGM 101:2008, 7.9: the numerical tolerance is half a unit of the last digit, and twice the
-// Monte-Carlo standard error must not exceed it. The expected decimals are worked by hand: with two decimals half a unit
-// is 0.005, so an error of 0.0025 is the largest that supports them.
+// Monte-Carlo standard error must not exceed it. The expected decimals are worked by hand: with two decimals half a
+// unit is 0.005, so an error of 0.0025 is the largest that supports them.
 func TestDigitsFollowMonteCarloError(t *testing.T) {
 	tests := []struct {
 		most int
@@ -133,14 +133,16 @@ func TestRoundDecimal(t *testing.T) {
 }
 
 // judged makes a statistic of at most three decimals with one criterion and the interval that decided on it.
-func judged(criterion, limit string, bound, err float64, compared, verdict string, estimate float64) (*record.Statistic, *record.Accept) {
+func judged(criterion, limit string, bound, err float64, compared, verdict string, estimate float64) (*record.Statistic,
+	*record.Accept) {
 	i := record.Interval{Method: "percentile", Requested: "percentile", Confidence: "0.95", Decides: true}
 	if criterion == atLeast {
 		i.Bound, i.Lower, i.MonteCarloError.Lower = spec.Lower, &bound, &err
 	} else {
 		i.Bound, i.Upper, i.MonteCarloError.Upper = spec.Upper, &bound, &err
 	}
-	s := &record.Statistic{ID: "m", Label: "Median", Unit: "N", Decimals: 3, Estimate: &estimate, Intervals: []record.Interval{i},
+	s := &record.Statistic{ID: "m", Label: "Median", Unit: "N", Decimals: 3, Estimate: &estimate,
+		Intervals: []record.Interval{i},
 		Accept: []record.Accept{{Criterion: criterion, Limit: limit, Method: "percentile", Confidence: "0.95", Bound: &bound,
 			Compared: compared, Verdict: verdict}}}
 	return s, &s.Accept[0]
@@ -236,10 +238,11 @@ func TestMostDecimals(t *testing.T) {
 	}
 }
 
-// The relative Monte-Carlo error of a standard error of B normal resample values is 1/√(2B): 0.005 for 20 000. Twice that
-// is 0.000213 of 0.0213, more than half a unit of the third digit and less than half a unit of the second.
+// The relative Monte-Carlo error of a standard error of B normal resample values is 1/√(2B): 0.005 for 20 000. Twice
+// that is 0.000213 of 0.0213, more than half a unit of the third digit and less than half a unit of the second.
 func TestStandardErrorAndBias(t *testing.T) {
-	s := &record.Statistic{Decimals: 3, Estimate: num(1.31), StandardError: num(0.02134), Bias: num(0.00112), Resamples: 20000}
+	s := &record.Statistic{Decimals: 3, Estimate: num(1.31), StandardError: num(0.02134), Bias: num(0.00112),
+		Resamples: 20000}
 	if got := standardErrorFigure(s); got != "0.021" {
 		t.Errorf("standard error %s, want 0.021", got)
 	}

@@ -5,7 +5,6 @@ import (
 	"fmt"
 	"io"
 	"strings"
-	"text/tabwriter"
 
 	"lotproof/runner/advisory"
 	"lotproof/runner/interval"
@@ -17,13 +16,19 @@ import (
 // lineWidth is how many characters a line on a terminal has at most, where it can be broken.
 const lineWidth = 100
 
+// kept joins words that must stay on one line, such as a figure and its unit.
+func kept(text string) string { return strings.ReplaceAll(text, " ", joint) }
+
+// joint stands between words that are kept together, until they are written.
+const joint = "\u00a0"
+
 // wrapped breaks a text into lines, the first after the given prefix, the others indented as far.
 func wrapped(prefix, text string) string {
 	indent := strings.Repeat(" ", len([]rune(prefix)))
 	var b strings.Builder
 	line := prefix
 	empty := true
-	for _, word := range strings.Fields(text) {
+	for _, word := range strings.FieldsFunc(text, breakable) {
 		if !empty && len([]rune(line))+1+len([]rune(word)) > lineWidth {
 			b.WriteString(line + "\n")
 			line, empty = indent, true
@@ -35,8 +40,11 @@ func wrapped(prefix, text string) string {
 		empty = false
 	}
 	b.WriteString(line + "\n")
-	return b.String()
+	return strings.NewReplacer(joint, " ", "\u202f", " ").Replace(b.String())
 }
+
+// breakable says where a line may end.
+func breakable(r rune) bool { return r == ' ' || r == '\n' || r == '\t' || r == '\r' }
 
 // Decisions writes what a person wants to know after a run: each criterion with its verdict, what stands in the way,
 // the other figures, and where the files are.
@@ -57,20 +65,14 @@ func Decisions(w io.Writer, rec *record.Record, folder string) error {
 		heading = ""
 		for k := range s.Accept {
 			a := &s.Accept[k]
-			b.WriteString(wrapped(fmt.Sprintf("  %s %-9s ", markOf(a.Verdict), a.Verdict), s.Label))
+			b.WriteString(wrapped(fmt.Sprintf("  %s %-9s ", markOf(a.Verdict), a.Verdict), named(s)))
 			bound := "no bound"
 			if a.Bound != nil {
-				bound = fmt.Sprintf("%s %s confidence bound %s", sideOf(a), confidenceText(a.Confidence),
-					withUnit(boundFigure(s, a), s.Unit))
-				if i := decidingInterval(s); i != nil && i.Bound == spec.TwoSided {
-					bound = fmt.Sprintf("%s limit %s, two-sided %s", sideOf(a), withUnit(boundFigure(s, a), s.Unit),
-						confidenceText(a.Confidence))
-				}
-				bound += " (" + a.Method + ")"
+				bound = fmt.Sprintf("%s %s (%s)", verdictBound(r, s, a), kept(withUnit(boundFigure(s, a), s.Unit)), a.Method)
 			}
-			b.WriteString(wrapped(hanging, fmt.Sprintf("estimate %s; %s; criterion %s", withUnit(estimateFigure(s), s.Unit),
-				bound, criterionText(s, a))))
-			if a.Verdict != "met" || strings.Contains(a.Why, "companion") {
+			b.WriteString(wrapped(hanging,
+				fmt.Sprintf("%s; %s; criterion %s", estimateText(s), bound, kept(criterionText(s, a)))))
+			if s.Estimate != nil && (a.Verdict != "met" || strings.Contains(a.Why, byCompanion)) {
 				b.WriteString(wrapped(hanging, a.Why))
 			}
 		}
@@ -80,14 +82,11 @@ func Decisions(w io.Writer, rec *record.Record, folder string) error {
 	for _, s := range plain {
 		b.WriteString(heading)
 		heading = ""
-		b.WriteString(wrapped("  ○ ", s.Label))
-		text := "estimate " + withUnit(estimateFigure(s), s.Unit)
-		if s.Estimate == nil {
-			text = "no estimate: " + s.EstimateReason
-		}
+		b.WriteString(wrapped("  ○ ", named(s)))
+		text := estimateText(s)
 		for k := range s.Intervals {
 			if i := &s.Intervals[k]; !i.Companion {
-				text += "; " + intervalText(i, s)
+				text += "; " + intervalText(s, i)
 			}
 		}
 		b.WriteString(wrapped(hanging, text))
@@ -102,34 +101,40 @@ func Decisions(w io.Writer, rec *record.Record, folder string) error {
 // hanging is the indentation of what stands under a line with a verdict.
 const hanging = "              "
 
-func sideOf(a *record.Accept) string {
-	if a.Criterion == atMost {
-		return "upper"
+// named is the label of a statistic with its id, by which the plan and the files name it.
+func named(s *record.Statistic) string {
+	if s.ID == s.Label {
+		return s.Label
 	}
-	return "lower"
+	return fmt.Sprintf("%s (%s)", s.Label, s.ID)
+}
+
+// estimateText is the estimate with its unit, or why there is none.
+func estimateText(s *record.Statistic) string {
+	if s.Estimate == nil {
+		return "no estimate: " + s.EstimateReason
+	}
+	return "estimate " + kept(withUnit(estimateFigure(s), s.Unit))
 }
 
 // intervalText writes an interval in one clause.
-func intervalText(i *record.Interval, s *record.Statistic) string {
-	name := fmt.Sprintf("%s %s %s", i.Method, boundWord(i.Bound), confidenceText(i.Confidence))
+func intervalText(s *record.Statistic, i *record.Interval) string {
+	lower, upper := limitFigures(s, i)
+	text := boundText(i.Bound, i.Confidence) + " "
 	switch {
 	case i.Reason != "":
 		return fmt.Sprintf("no %s limit: %s", i.Method, i.Reason)
 	case i.Bound == spec.Lower:
-		return fmt.Sprintf("at least %s (%s)", lowerFigure(i, s), name)
+		text += kept(withUnit(lower, s.Unit))
 	case i.Bound == spec.Upper:
-		return fmt.Sprintf("at most %s (%s)", upperFigure(i, s), name)
+		text += kept(withUnit(upper, s.Unit))
+	default:
+		text += kept(withUnit(lower+" to "+upper, s.Unit))
 	}
-	return fmt.Sprintf("%s to %s (%s)", lowerFigure(i, s), upperFigure(i, s), name)
+	return fmt.Sprintf("%s (%s)", text, i.Method)
 }
 
-func boundWord(b spec.Bound) string {
-	if b == spec.TwoSided {
-		return "two-sided"
-	}
-	return string(b) + " bound"
-}
-
+// writeDoubts writes the stops and cautions of a statistic; the notes stand in the workbook and the appendix.
 func writeDoubts(b *bytes.Buffer, s *record.Statistic) {
 	for _, a := range s.Advisories {
 		if a.Severity != advisory.Note {
@@ -177,7 +182,11 @@ func Outline(w io.Writer, r *record.Results) error {
 		entry("SHA-256", s.SHA256+" ("+stated+")")
 		entry("rows", rowsText(s))
 		for _, e := range s.Exclusions {
-			entry("excluded", fmt.Sprintf("%d rows where %s; %s By: %s", len(e.Lines), e.Where, e.Because, e.By))
+			rows := countText(len(e.Lines)) + " rows"
+			if len(e.Lines) == 1 {
+				rows = "1 row"
+			}
+			entry("excluded", fmt.Sprintf("%s where %s; %s By: %s", rows, e.Where, e.Because, orElse(e.By, notStated)))
 		}
 		for _, c := range p.Sources[i].Columns {
 			entry("column", columnText(c))
@@ -198,6 +207,7 @@ func Outline(w io.Writer, r *record.Results) error {
 		entry("label", s.Label)
 		entry("role", s.Role)
 		entry("statistic", describe(s))
+		entry("given in", orElse(s.Unit, "no unit"))
 		entry("rows", fmt.Sprintf("%s read = %s used + %s excluded + %s missing + %s outside", countText(s.Rows.Read),
 			countText(s.Rows.Used), countText(s.Rows.Excluded), countText(s.Rows.Missing), countText(s.Rows.Outside)))
 		entry("unit", strings.Join(s.Design.Unit, ", then ")+fmt.Sprintf("; %s outermost units", countText(s.Design.Units)))
@@ -207,15 +217,14 @@ func Outline(w io.Writer, r *record.Results) error {
 				how = "paired, drawn jointly"
 			}
 			entry("groups", fmt.Sprintf("%s: %d rows in %d units; %s: %d rows in %d units; %s", c.Of[0], c.N[0], c.Units[0],
-				c.Of[1], c.N[1],
-				c.Units[1], how))
+				c.Of[1], c.N[1], c.Units[1], how))
 		}
 		if len(s.Design.Strata) > 1 {
 			var parts []string
 			for _, st := range s.Design.Strata {
-				parts = append(parts, fmt.Sprintf("%s %d", st.Name, st.Units))
+				parts = append(parts, fmt.Sprintf("%s: %s units, %s rows", st.Name, countText(st.Units), countText(st.Rows)))
 			}
-			entry("units drawn", strings.Join(parts, "; "))
+			entry("strata", strings.Join(parts, "; "))
 		}
 		entry("resamples", countText(q.Resampling.Resamples))
 		entry("bound", string(q.Bound))
@@ -255,7 +264,7 @@ func columnText(c spec.Column) string {
 		text += fmt.Sprintf(", %d decimals", c.Decimals)
 	}
 	if c.Type == spec.TypeNumber {
-		text += ", shape " + c.Shape
+		text += ", shape " + orElse(c.Shape, "unknown")
 	}
 	if len(c.Levels) > 0 {
 		text += ": " + strings.Join(c.Levels, ", ")
@@ -266,23 +275,21 @@ func columnText(c spec.Column) string {
 // Catalogue lists what a plan may name.
 func Catalogue(w io.Writer) error {
 	var b bytes.Buffer
-	t := tabwriter.NewWriter(&b, 0, 0, 2, ' ', 0)
-	fmt.Fprintln(t, "Statistics")
+	entry := func(name, summary string) {
+		first, _, _ := strings.Cut(summary, ". ")
+		b.WriteString(wrapped(fmt.Sprintf("  %-32s  ", name), strings.TrimSuffix(first, ".")+"."))
+	}
+	b.WriteString("Statistics\n")
 	for _, d := range statistic.All() {
-		fmt.Fprintf(t, "  %s\t%s\n", d.Name, d.Summary)
+		entry(d.Name, d.Summary)
 	}
-	fmt.Fprintln(t, "\nIntervals")
+	b.WriteString("\nIntervals\n")
 	for _, d := range interval.All() {
-		first, _, _ := strings.Cut(d.Summary, ". ")
-		fmt.Fprintf(t, "  %s\t%s.\n", d.Name, strings.TrimSuffix(first, "."))
+		entry(d.Name, d.Summary)
 	}
-	fmt.Fprintln(t, "\nAdvisories")
+	b.WriteString("\nAdvisories\n")
 	for _, d := range advisory.All() {
-		first, _, _ := strings.Cut(d.Summary, ". ")
-		fmt.Fprintf(t, "  %s\t%s.\n", d.Code, strings.TrimSuffix(first, "."))
-	}
-	if err := t.Flush(); err != nil {
-		return err
+		entry(d.Code, d.Summary)
 	}
 	b.WriteString("\nlotproof catalogue NAME shows an entry with formula and source.\n")
 	_, err := w.Write(b.Bytes())

@@ -1,7 +1,7 @@
 // Command make writes the data of the harbour example. Everything in them is invented: there is no such product, lot,
 // laboratory or test. The truth is known, because it stands here.
 //
-//	go run ./examples/harbour/make examples/harbour
+//	go run ./examples/harbour/make          # from the top of the repository
 package main
 
 import (
@@ -19,78 +19,118 @@ import (
 
 func main() {
 	log.SetFlags(0)
-	if len(os.Args) != 2 {
-		log.Fatal("name the folder to write to")
+	folder := "examples/harbour"
+	switch {
+	case len(os.Args) == 2:
+		folder = os.Args[1]
+	case len(os.Args) > 2:
+		log.Fatal("too many arguments; name one folder to write to, or none for " + folder)
 	}
 	strips, pouches := tables()
-	for name, content := range map[string][]byte{"strips.csv": strips, "pouches.csv": pouches} {
-		if err := os.WriteFile(filepath.Join(os.Args[1], name), content, 0o666); err != nil {
+	for _, file := range []struct {
+		name    string
+		content []byte
+	}{{"strips.csv", strips}, {"pouches.csv", pouches}} {
+		if err := os.WriteFile(filepath.Join(folder, file.name), file.content, 0o666); err != nil {
 			log.Fatal(err)
 		}
 	}
 }
 
-// The invented truth. Strength of a strip in N per 15 mm:
+// The invented truth. The strength of a strip, in N per 15 mm, is
 //
-//	level(age) · lot · pouch · strip · position
+//	level(age) · lot · e^(−P) · e^(−S) · corner
 //
-// Lots differ by 3 % (one standard deviation), pouches by 6 %, strips within a pouch by 6 %, so that readings of one
-// pouch are correlated by about a half. The strip factor is e^(−w) with w of a Weibull law: a long tail to the left.
-// Chevron corners of sealer S2 are 4 % weaker. The instrument reads in steps of 0.05.
+// P is drawn once for a pouch and S once for a strip, both from a Weibull law: most seals lie near the level, and a few
+// fall far short of it, so the tail is to the left. P and S spread alike: within a lot, readings of one pouch are
+// correlated by about a half. Chevron corners sealed on S2 are 4 % weaker. The instrument reads in steps of 0.05.
 const (
-	seed       = 7_1
-	resolution = 0.05
-	lotSD      = 0.03
-	pouchSD    = 0.06
-	stripScale = 0.10
-	chevronS2  = 0.96
+	seed        = 71 // chosen before any data were made: the number of the study, and never changed
+	resolution  = 0.05
+	pouchScale  = 0.084
+	stripScale  = 0.080
+	weibull     = 1.2 // shape of both laws; 1 would be exponential, 3.6 nearly symmetric
+	weakCorner  = 0.96
+	tearShare   = 0.06 // of strips that tear and do not peel
+	perLot      = 10   // pouches of one lot at one age
+	slipDivisor = 3    // a grip that slips shows about a third of the strength
 )
 
 var (
-	lots      = []string{"L1", "L2", "L3"}
-	positions = []string{"left", "right", "chevron left", "chevron right"}
-	ages      = []struct {
+	lots = []struct {
+		name   string
+		factor float64
+	}{{"L1", 1.03}, {"L2", 1.00}, {"L3", 0.97}}
+	ages = []struct {
 		name, weeks string
-		level       float64 // of the strongest strips; 8 % are lost in 12 weeks
-	}{{"fresh", "0", 2.10}, {"6 weeks", "6", 2.01}, {"12 weeks", "12", 1.93}}
-	perLot = 10
+		level       float64
+	}{{"fresh", "0", 2.20}, {"6 weeks", "6", 2.11}, {"12 weeks", "12", 2.024}} // 8 % are lost in 12 weeks
+	positions = []string{"left", "right", "chevron left", "chevron right"}
 )
 
 // voids are the strips whose test was not valid, by pouch and position, with the reason that the laboratory gave. Two
-// pouches at 12 weeks have no valid strip at all.
+// pouches at 12 weeks have no valid strip at all. They belong to the design, like the numbers above.
 var voids = map[string]string{
-	"P008/right":         "grip slipped",
-	"P017/left":          "grip slipped",
+	"P008/right":         slipped,
+	"P017/left":          slipped,
 	"P041/chevron left":  "cut not square",
-	"P066/left":          "pouch torn when opened",
-	"P066/right":         "pouch torn when opened",
-	"P066/chevron left":  "pouch torn when opened",
-	"P066/chevron right": "pouch torn when opened",
-	"P079/left":          "pouch torn when opened",
-	"P079/right":         "pouch torn when opened",
-	"P079/chevron left":  "pouch torn when opened",
-	"P079/chevron right": "pouch torn when opened",
-	"P083/chevron right": "grip slipped",
+	"P066/left":          torn,
+	"P066/right":         torn,
+	"P066/chevron left":  torn,
+	"P066/chevron right": torn,
+	"P079/left":          torn,
+	"P079/right":         torn,
+	"P079/chevron left":  torn,
+	"P079/chevron right": torn,
+	"P083/chevron right": slipped,
 }
 
-// tables returns the two files. The random numbers come from PCG, and exp and log from the program's own functions, so
-// the bytes are the same on every machine.
-func tables() (strips, pouches []byte) {
-	random := rand.New(rand.NewPCG(seed, seed))
-	uniform := func() float64 { return (float64(random.Uint64()>>11) + 0.5) / (1 << 53) }
-	normal := func() float64 { return numeric.NormalQuantile(uniform()) }
+const (
+	slipped = "grip slipped"
+	torn    = "pouch torn when opened"
+)
 
-	lotFactor := make([]float64, len(lots))
-	for i := range lotFactor {
-		lotFactor[i] = 1 + float64(lotSD*normal())
+// A source draws from the laws above. The integers come from PCG, and exp and log from the program's own functions, so
+// the numbers have the same bits on every machine.
+type source struct{ random *rand.Rand }
+
+func newSource(seed uint64) source { return source{rand.New(rand.NewPCG(seed, seed))} }
+
+// uniform returns a number strictly between 0 and 1.
+func (s source) uniform() float64 { return (float64(s.random.Uint64()>>11) + 0.5) / (1 << 53) }
+
+// share returns e^(−w), with w = scale · (−ln u)^(1/shape) of a Weibull law.
+func (s source) share(scale float64) float64 {
+	w := float64(scale * numeric.Exp(numeric.Log(-numeric.Log(s.uniform()))/weibull))
+	return numeric.Exp(-w)
+}
+
+// pouch returns the strengths of the four strips of a pouch, in steps of the instrument.
+func (s source) pouch(level, lot float64, sealer string) []int {
+	centre := float64(level*lot) * s.share(pouchScale)
+	steps := make([]int, len(positions))
+	for p := range steps {
+		strength := float64(centre * s.share(stripScale))
+		if sealer == "S2" && p >= 2 {
+			strength = float64(strength * weakCorner)
+		}
+		steps[p] = int(strength/resolution + 0.5)
 	}
-	var stripTable, pouchTable [][]string
-	stripTable = append(stripTable, []string{"strip", "pouch", "lot", "age", "position", "sealer", "strength", "failure_mode",
-		"status", "void_reason"})
-	pouchTable = append(pouchTable, []string{"pouch", "lot", "age", "weeks", "valid_strips", "weakest"})
-	row, number := 0, 0
+	return steps
+}
+
+// reading writes a number of steps as the instrument shows it.
+func reading(steps int) string { return strconv.FormatFloat(float64(5*steps)/100, 'f', 2, 64) }
+
+// tables returns the two files.
+func tables() (strips, pouches []byte) {
+	random := newSource(seed)
+	stripTable := [][]string{{"strip", "pouch", "lot", "age", "position", "sealer", "strength", "failure_mode", "status",
+		"void_reason"}}
+	pouchTable := [][]string{{"pouch", "lot", "age", "weeks", "valid_strips", "weakest"}}
+	number := 0
 	for _, age := range ages {
-		for l, lot := range lots {
+		for _, lot := range lots {
 			for range perLot {
 				number++
 				pouch := fmt.Sprintf("P%03d", number)
@@ -98,49 +138,40 @@ func tables() (strips, pouches []byte) {
 				if number%2 == 0 {
 					sealer = "S2"
 				}
-				centre := float64(age.level*lotFactor[l]) * (1 + float64(pouchSD*normal()))
-				valid, weakest := 0, 0.0
-				for p, position := range positions {
-					row++
-					// e^(−w), w Weibull with shape 1.4: w = scale · (−ln u)^(1/1.4)
-					w := float64(stripScale * numeric.Exp(numeric.Log(-numeric.Log(uniform()))/1.4))
-					strength := float64(centre * numeric.Exp(-w))
-					if sealer == "S2" && p >= 2 {
-						strength = float64(strength * chevronS2)
-					}
-					steps := int(strength/resolution + 0.5)
-					mode := "peel"
-					if uniform() < 0.06 {
+				valid, weakest := 0, 0
+				for p, steps := range random.pouch(age.level, lot.factor, sealer) {
+					strength, mode, status := reading(steps), "peel", "valid"
+					if random.uniform() < tearShare {
 						mode = "tear"
 					}
-					text := strconv.FormatFloat(float64(5*steps)/100, 'f', 2, 64)
-					status, reason := "valid", ""
-					if r, void := voids[pouch+"/"+position]; void {
-						status, reason, mode, text = "void", r, "", ""
-						if r == "grip slipped" {
-							text = strconv.FormatFloat(float64(5*(steps/3))/100, 'f', 2, 64) // the reading when it slipped
+					reason, void := voids[pouch+"/"+positions[p]]
+					switch {
+					case void:
+						strength, mode, status = "", "", "void"
+						if reason == slipped {
+							strength = reading(steps / slipDivisor)
 						}
-					} else {
-						if read := float64(5*steps) / 100; valid == 0 || read < weakest {
-							weakest = read
-						}
+					case valid == 0 || steps < weakest:
+						weakest = steps
+						fallthrough
+					default:
 						valid++
 					}
-					stripTable = append(stripTable, []string{strconv.Itoa(row), pouch, lot, age.name, position, sealer, text, mode,
-						status, reason})
+					stripTable = append(stripTable, []string{strconv.Itoa(len(stripTable)), pouch, lot.name, age.name,
+						positions[p], sealer, strength, mode, status, reason})
 				}
 				least := ""
 				if valid > 0 {
-					least = strconv.FormatFloat(weakest, 'f', 2, 64)
+					least = reading(weakest)
 				}
-				pouchTable = append(pouchTable, []string{pouch, lot, age.name, age.weeks, strconv.Itoa(valid), least})
+				pouchTable = append(pouchTable, []string{pouch, lot.name, age.name, age.weeks, strconv.Itoa(valid), least})
 			}
 		}
 	}
-	return write(stripTable), write(pouchTable)
+	return text(stripTable), text(pouchTable)
 }
 
-func write(table [][]string) []byte {
+func text(table [][]string) []byte {
 	var b bytes.Buffer
 	w := csv.NewWriter(&b)
 	if err := w.WriteAll(table); err != nil {

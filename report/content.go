@@ -142,8 +142,8 @@ func comparisonText(r *record.Results) string {
 		return ""
 	}
 	text := "A criterion is met if its bound lies on the right side of the limit; a bound equal to the limit meets it. " +
-		"It is not met if " +
-		"the estimate too lies on the wrong side, and not shown if only the bound does, or if no bound carries a verdict. "
+		"It is not met if the estimate too lies on the wrong side, and not shown if only the bound does, or if no bound " +
+		"carries a verdict. "
 	if rule.Rule == "rounded" {
 		ties := "to the even digit"
 		if rule.Ties == "away" {
@@ -153,8 +153,7 @@ func comparisonText(r *record.Results) string {
 			" (rounding method of ASTM E29). The comparison is made in decimal arithmetic."
 	}
 	return text + "Bounds are compared without rounding (absolute method of ASTM E29), in decimal arithmetic with 15 " +
-		"significant digits, " +
-		"which takes off what binary arithmetic adds."
+		"significant digits, which takes off what binary arithmetic adds."
 }
 
 // useText says what an interval is there for.

@@ -140,17 +140,13 @@ func drawnText(d *record.Design) string {
 func streamTexts(r *record.Results) []string {
 	return []string{
 		"Each resample has a random stream of its own, addressed by the seed, the resampling design and the number of the " +
-			"resample. " +
-			"Results therefore do not depend on how many processors drew, or on which other statistics the plan holds; " +
-			"statistics on the " +
-			"same rows with the same design share their resamples. Generator: " + r.Program.Generator + " (Blackman and Vigna " +
-			"2021). Seed: " +
+			"resample. Results therefore do not depend on how many processors drew, or on which other statistics the plan " +
+			"holds; statistics on the same rows with the same design share their resamples. Generator: " +
+			r.Program.Generator + " (Blackman and Vigna 2021). Seed: " +
 			seedText(&r.Plan.Resolved) + ".",
 		"Every simulated limit has a Monte-Carlo standard error: what another seed would change. It is found from the " +
-			"density of the resample " +
-			"values at the limit. No digit is printed whose half unit is below twice this error, except where a digit more is " +
-			"needed to show on " +
-			"which side of a criterion a bound lies.",
+			"density of the resample values at the limit. No digit is printed whose half unit is below twice this error, " +
+			"except where a digit more is needed to show on which side of a criterion a bound lies.",
 	}
 }
 
@@ -193,8 +189,7 @@ func references(r *record.Results) []string {
 func validityTexts(r *record.Results) []string {
 	texts := []string{
 		"An interval says how far the estimate may lie from the true value when units like those observed are taken again " +
-			"and again. It does " +
-			"not cover units, conditions or times that were not sampled, nor mistakes in the data.",
+			"and again. It does not cover units, conditions or times that were not sampled, nor mistakes in the data.",
 		"It rests on resampling units that are independent of each other within their stratum. Rows that belong together " +
 			"must lie in one unit.",
 		"The advisories are those that this version computes from the data. That none is given does not show that all is " +
@@ -222,17 +217,14 @@ func validityTexts(r *record.Results) []string {
 
 // notForLotproof is said in every report.
 const notForLotproof = "Lotproof judges a criterion, not a product. Decisions on the safety of a device, drug, water " +
-	"or exposure are for " +
-	"the responsible and qualified persons under the regulations that apply."
+	"or exposure are for the responsible and qualified persons under the regulations that apply."
 
 // replayTexts says how to check the report.
 func replayTexts(rec *record.Record) []string {
 	return []string{
 		"To run this study again and compare every figure to the last bit and every file to the last byte, keep the data " +
-			"files beside the plan and " +
-			"give the command: lotproof replay record.json",
-		"The digest of the results is the SHA-256 of their compact JSON. " + "The digest of the plan, " +
-			"" + rec.Results.Plan.SHA256 +
+			"files beside the plan and give the command: lotproof replay record.json",
+		"The digest of the results is the SHA-256 of their compact JSON. The digest of the plan, " + rec.Results.Plan.SHA256 +
 			", is over its content: spacing, order of keys and comments do not enter, every value does.",
 	}
 }
@@ -247,10 +239,16 @@ func signatureText() string {
 func figureCaption(s *record.Statistic) string {
 	text := fmt.Sprintf("The %s resample values of “%s”, with the estimate", countText(s.Resamples-s.FailedResamples),
 		s.Label)
+	limits := func(i *record.Interval) string {
+		if i.Bound == spec.TwoSided {
+			return " and both limits of the " + i.Method + " interval"
+		}
+		return fmt.Sprintf(" and the %s bound of the %s method", i.Bound, i.Method)
+	}
 	if i := decidingInterval(s); i != nil {
-		text += " and the limits of the " + i.Method + " interval that carries the verdict"
+		text += limits(i) + ", which carries the verdict"
 	} else if len(s.Intervals) > 0 && s.Intervals[0].Reason == "" {
-		text += " and the limits of the " + s.Intervals[0].Method + " interval"
+		text += limits(&s.Intervals[0])
 	}
 	text += "."
 	if len(s.Accept) > 0 {

@@ -1,6 +1,7 @@
 package runner
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"os"
@@ -71,7 +72,6 @@ func TestRepeatabilityOfDrawnUnits(t *testing.T) {
 			}
 		}
 	}
-	type atom struct{ value, share float64 }
 	var law []atom
 	var list func(g, left int, sum, share float64)
 	factorial := []float64{1, 1, 2, 6, 24, 120, 720}
@@ -86,12 +86,7 @@ func TestRepeatabilityOfDrawnUnits(t *testing.T) {
 		}
 	}
 	list(0, 6, 0, 1)
-	slices.SortFunc(law, func(a, b atom) int {
-		if a.value < b.value {
-			return -1
-		}
-		return 1
-	})
+	slices.SortFunc(law, func(a, b atom) int { return cmp.Compare(a.value, b.value) })
 	var total, mean, squares float64
 	for _, p := range law {
 		total += p.share
@@ -102,15 +97,6 @@ func TestRepeatabilityOfDrawnUnits(t *testing.T) {
 		t.Fatalf("%d multisets, probability %v", len(law), total)
 	}
 	sd := math.Sqrt(squares - mean*mean)
-	limit := func(level float64) float64 {
-		sum := 0.0
-		for _, p := range law {
-			if sum += p.share; sum >= level {
-				return p.value
-			}
-		}
-		return math.NaN()
-	}
 
 	const resamples = 99999
 	s := setups["rail-cluster"]
@@ -126,11 +112,5 @@ func TestRepeatabilityOfDrawnUnits(t *testing.T) {
 	if math.Abs(*r.StandardError/sd-1) > 5/math.Sqrt(2*resamples) {
 		t.Errorf("standard error %v, want %v", *r.StandardError, sd)
 	}
-	// Five standard errors of a rank either way.
-	reach := 5 * math.Sqrt(0.025*0.975/resamples)
-	for name, p := range map[string]float64{"lower": 0.025, "upper": 0.975} {
-		if got := limits(t, r, "percentile")[name]; got < limit(p-reach)-1e-9 || got > limit(p+reach)+1e-9 {
-			t.Errorf("%s limit %v, allowed %v to %v", name, got, limit(p-reach), limit(p+reach))
-		}
-	}
+	checkPercentiles(t, "repeatability", law, r, resamples)
 }

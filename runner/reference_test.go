@@ -219,21 +219,6 @@ func TestReference(t *testing.T) {
 	reference.Run(t, "runner", checks)
 }
 
-// checkExactMedian compares percentile limits of the median with those of its exact law. The law has few atoms, and
-// none of them ends within the simulation error of 0.025 or 0.975, so the limits must be equal. The mean of the
-// resample values may differ by 5 standard errors.
-func checkExactMedian(t *testing.T, c reference.Case, r *record.Statistic, resamples int) {
-	t.Helper()
-	c.Compare(t, limits(t, r, "percentile"), 0, "mean", "se")
-	if want := c.Number(t, "median"); *r.Estimate != want {
-		t.Errorf("%s: median %v, want %v", c.ID, *r.Estimate, want)
-	}
-	mean, want := *r.Estimate+*r.Bias, c.Expected["mean"]
-	if reach := 5 * c.Expected["se"] / math.Sqrt(float64(resamples)); math.Abs(mean-want) > reach {
-		t.Errorf("%s: mean of the resample values %v, want %v ± %v", c.ID, mean, want, reach)
-	}
-}
-
 // jackknifeChecks adds the cases of the delete-one jackknife: what the engine finds without each unit, and the
 // acceleration.
 func jackknifeChecks(checks map[string]func(*testing.T, reference.Case)) {

@@ -219,9 +219,9 @@ func (c Case) Range(t testing.TB, name string, want float64, resamples int) (low
 	case "absolute":
 		return want - c.Tolerance, want + c.Tolerance
 	case "monte-carlo":
+		last := 1e-12 * math.Abs(want) // sums in another order differ in the last bits
 		if r, ok := c.MonteCarlo.Accept[name]; ok && resamples == c.MonteCarlo.Resamples {
-			// Sharper than the general rule. Sums in another order differ in the last bits: 1e-12.
-			shift, last := want-c.Expected[name], 1e-12*math.Abs(want)
+			shift := want - c.Expected[name] // sharper than the general rule
 			return r[0] + shift - last, r[1] + shift + last
 		}
 		sd, ok := c.MonteCarlo.SD[name]
@@ -232,7 +232,7 @@ func (c Case) Range(t testing.TB, name string, want float64, resamples int) (low
 		if !ok {
 			reference = c.MonteCarlo.ReferenceError[Value]
 		}
-		reach := 5 * math.Sqrt(sd*sd/float64(resamples)+reference*reference)
+		reach := 5*math.Sqrt(sd*sd/float64(resamples)+reference*reference) + last
 		return want - reach, want + reach
 	}
 	t.Fatalf("%s: unknown kind of tolerance %q", c.ID, c.ToleranceKind)

@@ -8,8 +8,8 @@ import (
 	"lotproof/spec"
 )
 
-// A decision is one row of TestDecisionSentence: what the record holds, and the sentence that a reader gets.
-type decision struct {
+// A decisionCase is one row of TestDecisionSentence: what the record holds, and the sentence that a reader gets.
+type decisionCase struct {
 	name     string
 	bound    spec.Bound
 	as       string // comparison
@@ -45,7 +45,7 @@ func TestDecisionSentence(t *testing.T) {
 		return record.Accept{Criterion: atMost, Limit: limit, Bound: bound, Compared: compared, Verdict: verdict, Why: why}
 	}
 	related := byCompanion + "stopped by few units"
-	tests := []decision{
+	tests := []decisionCase{
 		{name: "lower met", bound: spec.Lower, unit: "N", rule: absolute, estimate: num(1.41),
 			accept: least("1.20", num(1.27), "1.27", "met", rightSide),
 			want: "Median: the lower 95 % confidence bound is 1.270 N; the criterion, at least 1.20 N, is met " +
@@ -186,7 +186,7 @@ func TestDecisionSentence(t *testing.T) {
 }
 
 // results makes the record of one statistic of at most three decimals.
-func (d *decision) results() *record.Results {
+func (d *decisionCase) results() *record.Results {
 	level := d.level
 	if level == "" {
 		level = "0.95"

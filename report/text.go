@@ -28,6 +28,7 @@ func wrapped(prefix, text string) string {
 	var b strings.Builder
 	line := prefix
 	empty := true
+	text = strings.ReplaceAll(text, " %", joint+"%")
 	for _, word := range strings.FieldsFunc(text, breakable) {
 		if !empty && len([]rune(line))+1+len([]rune(word)) > lineWidth {
 			b.WriteString(line + "\n")

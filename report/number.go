@@ -26,10 +26,12 @@ const (
 // them, a figure cannot contradict its verdict.
 const judgedDigits = 15
 
-// fixedText writes v with a fixed number of decimals and a real minus sign. Figures that would need more than 15 digits
-// before or after the point are written with a power of ten.
+// fixedText writes v with a fixed number of decimals and a real minus sign. What is rounded is the decimal of 15
+// digits that was judged, a half away from zero: so do spreadsheet programs, and the workbook shows the same digits
+// as the appendix. 1.545 becomes 1.55, although its binary number is a little less. Figures that would need more than
+// 15 digits before or after the point are written with a power of ten.
 func fixedText(v float64, decimals int) string {
-	text := strconv.FormatFloat(v, 'f', max(decimals, 0), 64)
+	text := judgedDecimal(v).FloatString(max(decimals, 0))
 	if math.Abs(v) >= 1e15 || decimals > 15 {
 		text = withPower(v, decimals)
 	}
@@ -187,7 +189,7 @@ func enough(decimals int, v float64, a *record.Accept, right bool) int {
 	compared, ok := new(big.Rat).SetString(a.Compared)
 	rounded := ok && compared.Cmp(judgedDecimal(*a.Bound)) != 0
 	for all := decimalsFor(v, judgedDigits); decimals < all; decimals++ {
-		d, _ := new(big.Rat).SetString(strconv.FormatFloat(v, 'f', decimals, 64))
+		d, _ := new(big.Rat).SetString(judgedDecimal(v).FloatString(decimals))
 		sides := []*big.Rat{d}
 		if rounded && d.Cmp(judgedDecimal(v)) != 0 { // a half that only printing made could be read either way
 			sides = []*big.Rat{roundDecimal(d, places, "even"), roundDecimal(d, places, "away")}

@@ -29,9 +29,9 @@ type marker struct {
 
 const (
 	figureGutter = 15.0 // left of the panel
-	panelHeight  = 26.0
+	panelHeight  = 25.0
 	zoneHeight   = 6.0 // below the panel, for the interval
-	axisHeight   = 9.5
+	axisHeight   = 8.6
 )
 
 var (
@@ -259,7 +259,7 @@ func (d *distribution) axisBelow(p *page, x scale, base float64) {
 	}
 	st := tickStyle
 	st.colour = ink
-	p.textCentre((x.from+x.to)/2, base+7.8, st, shorten(st, title, x.to-x.from))
+	p.textCentre((x.from+x.to)/2, base+7.4, st, shorten(st, title, x.to-x.from))
 }
 
 // shorten cuts text with an ellipsis so that it is no wider than width.

@@ -1,6 +1,7 @@
 package report
 
 import (
+	"slices"
 	"strconv"
 	"strings"
 )
@@ -12,9 +13,26 @@ func (a *appendix) limitsPart() {
 	for _, text := range validityTexts(a.results) {
 		f.add(bullet(plainRun(body, text), 1.6)...)
 	}
-	t := table{columns: []column{{title: "Advisory", least: 25, most: 25}, {title: "Statistic", most: 32},
-		{title: "Finding and what to do"}, {title: "Source of the rule", most: 36}}, size: small.size, before: 1}
+	if t := a.advisories(); len(t.rows) == 0 {
+		f.add(prose("No advisory was given.")...)
+	} else {
+		f.add(tableWithCaption(caption(a.tableLabel(), "Advisories, the gravest first.", 4), t)...)
+	}
+	if d := a.plan.Study.Disclaimers; len(d) > 0 {
+		f.add(a.section(1, "Statements of the plan", "disclaimers")...)
+		for _, text := range d {
+			f.add(bullet(plainRun(body, text), 1.6)...)
+		}
+	}
+}
+
+// advisories lists each advisory once, with the statistics that have it and the evidence of each.
+func (a *appendix) advisories() table {
+	t := table{columns: []column{{title: "Advisory", least: 27, most: 27}, {title: "Statistics and findings"},
+		{title: "What to do, and where the rule is from", least: 58, most: 58}}, size: small.size, before: 1}
 	for _, severity := range []string{"stop", "caution", "note"} {
+		var codes []string
+		row := map[string]int{}
 		for i := range a.results.Statistics {
 			s := &a.results.Statistics[i]
 			for k := range s.Advisories {
@@ -22,20 +40,29 @@ func (a *appendix) limitsPart() {
 				if v.Severity != severity {
 					continue
 				}
-				t.rows = append(t.rows, []cell{
-					{runs: []run{{text: severity, style: smallBold}, {text: "\n" + v.Code, style: quiet}},
-						symbol: severitySymbol(severity)},
-					{runs: []run{{text: s.Label, style: small.in(accent), to: statisticName(i)}}},
-					{runs: []run{{text: v.Text + " " + v.Action + " ", style: small}, {text: evidenceText(v), style: quiet}}},
-					cellText(quiet, v.Source)})
+				if !slices.Contains(codes, v.Code) {
+					codes = append(codes, v.Code)
+					row[v.Code] = len(t.rows)
+					t.rows = append(t.rows, []cell{
+						{runs: []run{{text: severity, style: smallBold}, {text: "\n" + v.Code, style: quiet}},
+							symbol: severitySymbol(severity)},
+						{},
+						{runs: []run{{text: v.Action, style: small}, {text: "\n" + v.Source + full(v.Source), style: quiet}}}})
+				}
+				found := &t.rows[row[v.Code]][1]
+				start := ""
+				if len(found.runs) > 0 {
+					start = "\n"
+				}
+				found.runs = append(found.runs, run{text: start, style: small},
+					run{text: s.Label + ". ", style: small.in(accent), to: statisticName(i)}, run{text: v.Text + " ", style: small})
+				if evidence := evidenceText(v); evidence != "" {
+					found.runs = append(found.runs, run{text: "(" + evidence + ")", style: quiet})
+				}
 			}
 		}
 	}
-	if len(t.rows) == 0 {
-		f.add(prose("No advisory was given.")...)
-	} else {
-		f.add(tableWithCaption(caption(a.tableLabel(), "Advisories, the gravest first.", 4), t)...)
-	}
+	return t
 }
 
 // provenancePart holds all that ties the results to plan, data and program.
@@ -114,17 +141,29 @@ func (a *appendix) planPart() {
 	f.add(prose("The text of " + a.results.Plan.File + " as it was run. The digest of the plan is taken of its content, " +
 		"not of its layout.")...)
 	text := strings.TrimSuffix(strings.ReplaceAll(a.results.Plan.Text, "\r\n", "\n"), "\n")
-	const gutter = 9.0
-	numberStyle := code.in(soft)
-	step := leading(code.size) * 0.94
+	const gutter = 8.0
+	numberStyle := listing.in(soft)
+	step := float64(leading(listing.size) * 0.94)
+	em := mono.width(" ", listing.size)
 	f.add(atom{height: 2})
 	for i, line := range strings.Split(text, "\n") {
-		for j, l := range wrap(plainRun(code, line), measure-gutter) {
+		// Lines that are too long go on below their own beginning, a little further in.
+		content := strings.TrimLeft(listing.face.clean(line), " ")
+		indent := min(float64(em*float64(len(listing.face.clean(line))-len(content))), measure/2)
+		width := measure - gutter - indent
+		lines := wrap(plainRun(listing, content), width)
+		if len(lines) > 1 {
+			lines = wrap(plainRun(listing, content), width-float64(2*em))
+		}
+		for j, l := range lines {
 			f.add(atom{height: step, draw: func(p *page, y float64) {
+				x := leftEdge + gutter + indent
 				if j == 0 {
-					p.textRight(leftEdge+gutter-3, y+baseline(code.size), numberStyle, strconv.Itoa(i+1))
+					p.textRight(leftEdge+gutter-3, y+baseline(listing.size), numberStyle, strconv.Itoa(i+1))
+				} else {
+					x += float64(2 * em)
 				}
-				l.draw(p, leftEdge+gutter, y+baseline(code.size))
+				l.draw(p, x, y+baseline(listing.size))
 			}})
 		}
 	}
@@ -151,11 +190,11 @@ func (a *appendix) referencesPart() {
 // signaturesPart leaves room for signatures, which belong to the quality system of the reader.
 func (a *appendix) signaturesPart() {
 	atoms := a.section(0, "Signatures", "signatures")
-	sentence := prose(signatureText())
-	for i := range sentence {
-		sentence[i].keep = true
+	note := prose(signatureText())
+	for i := range note {
+		note[i].keep = true
 	}
-	atoms = append(atoms, sentence...)
+	atoms = append(atoms, note...)
 	names := []string{"Role", "Printed name", "Meaning of the signature", "Date", "Signature"}
 	starts := []float64{0, 30, 68, 110, 132}
 	atoms = append(atoms, space(2), atom{height: 5, keep: true, draw: func(p *page, y float64) {

@@ -2,14 +2,17 @@ package report
 
 // The styles of the appendix.
 var (
-	body       = style{face: sans, size: 8.6, colour: ink}
-	bodyBold   = style{face: bold, size: 8.6, colour: ink}
-	small      = style{face: sans, size: 7.6, colour: ink}
-	smallBold  = style{face: bold, size: 7.6, colour: ink}
-	quiet      = style{face: sans, size: 7.6, colour: soft}
-	code       = style{face: mono, size: 7.2, colour: ink}
-	linkStyle  = style{face: sans, size: 8.6, colour: accent}
-	titleStyle = style{face: bold, size: 17, colour: ink}
+	body         = style{face: sans, size: 8.6, colour: ink}
+	bodyBold     = style{face: bold, size: 8.6, colour: ink}
+	small        = style{face: sans, size: 7.6, colour: ink}
+	smallBold    = style{face: bold, size: 7.6, colour: ink}
+	quiet        = style{face: sans, size: 7.6, colour: soft}
+	sentence     = style{face: sans, size: 8, colour: ink}
+	sentenceBold = style{face: bold, size: 8, colour: ink}
+	code         = style{face: mono, size: 7.2, colour: ink}
+	listing      = style{face: mono, size: 6.8, colour: ink}
+	linkStyle    = style{face: sans, size: 8.6, colour: accent}
+	titleStyle   = style{face: bold, size: 17, colour: ink}
 )
 
 var headingStyles = [...]style{{face: bold, size: 13.5, colour: ink}, {face: bold, size: 10, colour: ink},
@@ -21,7 +24,7 @@ func heading(level int, number, title, name string) []atom {
 	before := [...]float64{9, 6.5, 4}[level]
 	x := leftEdge
 	if number != "" {
-		x += [...]float64{9, 11, 0}[level]
+		x += max([...]float64{9, 11, 0}[level], s.face.width(number, s.size)+3)
 	}
 	atoms := paragraph(plainRun(s, title), x, rightEdge-x, before)
 	if number != "" {
@@ -45,10 +48,12 @@ func prose(text string) []atom { return paragraph(plainRun(body, text), leftEdge
 // rich is a paragraph of runs.
 func rich(runs ...run) []atom { return paragraph(runs, leftEdge, measure, 2) }
 
+// pairName is the width of the names in pairs.
+const pairName = 40.0
+
 // pairs sets names with what belongs to them, one below the other.
 func pairs(rows [][2]cell, before float64) []atom {
-	const name = 40.0
-	t := table{columns: []column{{least: name, most: name}, {}}, size: body.size, before: before}
+	t := table{columns: []column{{least: pairName, most: pairName}, {}}, size: body.size, before: before}
 	for _, r := range rows {
 		t.rows = append(t.rows, []cell{r[0], r[1]})
 	}

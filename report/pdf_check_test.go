@@ -52,7 +52,8 @@ func (d *document) text() string {
 	return b.String()
 }
 
-// checkPages fails if text leaves the sheet's margins, texts cover each other, or a page is left empty.
+// checkPages fails if text leaves the sheet's margins, texts cover each other, a page is left empty, or a heading stands
+// at the foot of a page.
 func checkPages(t *testing.T, d *document) {
 	t.Helper()
 	faults := 0
@@ -76,6 +77,15 @@ func checkPages(t *testing.T, d *document) {
 			fault("page %d holds %d texts only", i+1, len(texts))
 		}
 		slices.SortStableFunc(texts, func(a, b mark) int { return cmp.Compare(a.y, b.y) })
+		last := mark{}
+		for _, m := range texts {
+			if m.y < bottomEdge+1 {
+				last = m
+			}
+		}
+		if slices.ContainsFunc(headingStyles[:], func(s style) bool { return s == last.style }) {
+			fault("page %d ends with the heading %q", i+1, last.text)
+		}
 		for j, a := range texts {
 			for _, b := range texts[j+1:] {
 				if b.y-a.y > 9 {

@@ -92,7 +92,7 @@ func (a *appendix) exclusions(s *record.Source) {
 		return
 	}
 	t := table{columns: []column{{title: "Rule: rows where", most: 46}, {title: "Reason"}, {title: "Stated by", most: 28},
-		{title: "Rows", align: right}, {title: "Lines of the file", most: 40}}, size: small.size, before: 1}
+		{title: "Rows", align: right}, {title: "Lines of the file", least: 25, most: 40}}, size: small.size, before: 1}
 	for _, e := range s.Exclusions {
 		t.rows = append(t.rows, []cell{cellText(code, e.Where), cellText(small, e.Because), cellText(small, e.By),
 			cellText(small, grouped(int64(len(e.Lines)))), cellText(small, lineRanges(e.Lines))})

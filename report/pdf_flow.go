@@ -4,8 +4,8 @@ package report
 const (
 	leftEdge   = 22.0
 	rightEdge  = sheetWidth - 20.0
-	topEdge    = 27.0
-	bottomEdge = sheetHeight - 23.0
+	topEdge    = 26.0
+	bottomEdge = sheetHeight - 22.0
 	measure    = rightEdge - leftEdge
 )
 

@@ -13,15 +13,20 @@ func (a *appendix) front() {
 	}})
 	f.add(together(append(paragraph(plainRun(titleStyle, study.Title), leftEdge, measure, 1), space(3)))...)
 	run := a.rec.Run
+	short := table{size: body.size,
+		columns: []column{{least: pairName, most: pairName}, {least: 52, most: 52}, {least: 26, most: 26}, {}}}
+	for _, r := range [][2][2]cell{
+		{pair("Study", study.ID, notStated), pair("Protocol", study.Protocol, notStated)},
+		{pair("Author", study.Author, notStated), pair("Status of the plan", study.Status, notStated)},
+		{pair("Run", strconv.Itoa(run.Number), ""), pair("Started (UTC)", run.Started, notStated)},
+	} {
+		short.rows = append(short.rows, []cell{r[0][0], r[0][1], r[1][0], r[1][1]})
+	}
+	f.add(short.atoms()...)
 	f.add(pairs([][2]cell{
-		pair("Study", study.ID, "not stated"),
-		pair("Purpose", study.Purpose, "not stated"),
-		pair("Protocol", study.Protocol, "not stated"),
-		pair("Author", study.Author, "not stated"),
-		pair("Status of the plan", study.Status, "not stated"),
-		pair("Run", fmt.Sprintf("%d, started %s (UTC)", run.Number, run.Started), ""),
+		pair("Purpose", study.Purpose, notStated),
 		{cellText(quiet, "Digest of the plan"), {runs: digestRuns(a.results.Plan.SHA256)}},
-	}, 1)...)
+	}, 0)[1:]...)
 
 	a.verdict()
 	a.decisions()
@@ -55,29 +60,29 @@ func (a *appendix) verdict() {
 		text = fmt.Sprintf("%s met, %d not met, %d not shown, of %d in all. The verdict of the study is the worst of them.",
 			strconv.Itoa(counts["met"]), counts["not met"], counts["not shown"], all)
 	}
-	const h = 15.0
-	a.flow.add(atom{before: 6, height: h, name: "verdict", draw: func(p *page, y float64) {
+	const h = 14.0
+	a.flow.add(atom{before: 5, height: h, name: "verdict", draw: func(p *page, y float64) {
 		sign := verdictSymbol(verdict)
 		p.box(band, leftEdge, y, measure, h)
 		p.box(sign.colour(), leftEdge, y, 1.2, h)
 		sign.draw(p, leftEdge+9, y+h/2, 3.2)
-		p.text(leftEdge+16, y+6.4, style{face: bold, size: 11, colour: ink}, "Verdict of the study: "+verdict)
-		p.text(leftEdge+16, y+11.4, small, text)
+		p.text(leftEdge+16, y+5.9, style{face: bold, size: 11, colour: ink}, "Verdict of the study: "+verdict)
+		p.text(leftEdge+16, y+10.8, small, text)
 	}})
 }
 
 // decisions are the criteria, each with its sentence.
 func (a *appendix) decisions() {
-	t := table{columns: []column{{title: "Verdict", least: 25, most: 25}, {title: "Criterion and decision"}},
-		size: body.size, before: 4}
+	t := table{columns: []column{{title: "Verdict", least: 24, most: 24}, {title: "Criterion and decision"}},
+		size: sentence.size, before: 4}
 	for i := range a.results.Statistics {
 		s := &a.results.Statistics[i]
 		for j := range s.Accept {
 			c := &s.Accept[j]
 			sign := verdictSymbol(c.Verdict)
-			t.rows = append(t.rows, []cell{{runs: plainRun(bodyBold, c.Verdict), symbol: sign},
-				{runs: []run{{text: decisionSentence(a.results, s, c) + " ", style: body},
-					{text: "→\u00a0" + a.resultNumber(i), style: linkStyle, to: statisticName(i)}}}})
+			t.rows = append(t.rows, []cell{{runs: plainRun(sentenceBold, c.Verdict), symbol: sign},
+				{runs: []run{{text: decisionSentence(a.results, s, c) + " ", style: sentence},
+					{text: "→\u00a0" + a.resultNumber(i), style: sentence.in(accent), to: statisticName(i)}}}})
 		}
 	}
 	if len(t.rows) > 0 {
@@ -90,8 +95,8 @@ const mostDoubts = 6
 
 // worst lists the gravest advisories.
 func (a *appendix) worst() {
-	t := table{columns: []column{{title: "Advisory", least: 25, most: 25}, {title: "Statistic and finding"}},
-		size: body.size, before: 5}
+	t := table{columns: []column{{title: "Advisory", least: 24, most: 24}, {title: "Statistic and finding"}},
+		size: sentence.size, before: 4}
 	more := 0
 	for _, severity := range []string{"stop", "caution"} {
 		for i := range a.results.Statistics {
@@ -104,8 +109,8 @@ func (a *appendix) worst() {
 					more++
 					continue
 				}
-				t.rows = append(t.rows, []cell{{runs: plainRun(bodyBold, severity), symbol: severitySymbol(severity)},
-					{runs: []run{{text: s.Label + ". ", style: linkStyle, to: statisticName(i)}, {text: v.Text, style: body}}}})
+				t.rows = append(t.rows, []cell{{runs: plainRun(sentenceBold, severity), symbol: severitySymbol(severity)},
+					{runs: []run{{text: s.Label + ". ", style: sentence.in(accent), to: statisticName(i)}, {text: v.Text, style: sentence}}}})
 			}
 		}
 	}

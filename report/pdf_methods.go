@@ -7,12 +7,12 @@ func (a *appendix) methodsPart() {
 	f := a.flow
 	f.add(a.section(0, "Methods", "methods")...)
 	f.add(prose("Only what this study used is described. Numbers in square brackets lead to the references.")...)
-	a.methods("Statistics", "method statistics", statisticMethods(a.results))
+	a.methods("Statistics", "", statisticMethods(a.results))
 	f.add(a.section(1, "Resampling", "method resampling")...)
 	for _, text := range resamplingTexts(a.results) {
 		f.add(prose(text)...)
 	}
-	a.methods("Intervals", "method intervals", intervalMethods(a.results))
+	a.methods("Intervals", " interval", intervalMethods(a.results))
 	f.add(a.section(1, "Random streams and Monte-Carlo error", "method streams")...)
 	texts := streamTexts(a.results)
 	for i, text := range texts {
@@ -29,15 +29,16 @@ func (a *appendix) methodsPart() {
 	}
 }
 
-// methods describes one kind of method, each with its formula and its references.
-func (a *appendix) methods(title, name string, all []methodText) {
+// methods describes one kind of method, each with its formula and its references. Names stand as plans write them, with
+// a word behind if that makes them plainer.
+func (a *appendix) methods(title, behind string, all []methodText) {
 	if len(all) == 0 {
 		return
 	}
-	a.flow.add(a.section(1, title, name)...)
+	a.flow.add(a.section(1, title, "methods "+title)...)
 	formulaStyle := style{face: sans, size: 9, colour: ink}
 	for _, m := range all {
-		atoms := heading(2, "", m.title, "method "+m.title) // as plans write it
+		atoms := heading(2, "", m.title+behind, "method "+m.title)
 		runs := append(plainRun(body, m.summary+" "), a.cite(m.sources...)...)
 		lines := rich(runs...)
 		lines[len(lines)-1].keep = m.formula != "" && len(lines) < 5 // a formula alone on a page is hard to read

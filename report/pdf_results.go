@@ -87,19 +87,19 @@ func (a *appendix) result(i int) {
 	atoms = append(atoms, prose(capital(describe(s))+". "+capital(s.Role)+" statistic.")...)
 	for j := range s.Accept {
 		c := &s.Accept[j]
-		t := table{columns: []column{{least: 25, most: 25}, {}}, size: body.size, before: 2.5, rows: [][]cell{
-			{{runs: plainRun(bodyBold, c.Verdict), symbol: verdictSymbol(c.Verdict)},
-				cellText(body, decisionSentence(a.results, s, c))}}}
+		t := table{columns: []column{{least: 24, most: 24}, {}}, size: sentence.size, before: 2, rows: [][]cell{
+			{{runs: plainRun(sentenceBold, c.Verdict), symbol: verdictSymbol(c.Verdict)},
+				cellText(sentence, withoutLabel(decisionSentence(a.results, s, c), s.Label))}}}
 		atoms = append(atoms, t.atoms()...)
 	}
 	if s.Estimate == nil {
 		atoms = append(atoms, rich(run{text: "No estimate: ", style: bodyBold},
 			run{text: s.EstimateReason + full(s.EstimateReason), style: body})...)
 	} else {
-		atoms = append(atoms, estimates(a.results, s)...)
+		atoms = append(atoms, estimates(s)...)
 	}
-	atoms = append(atoms, groups(a.results, s)...)
-	atoms = append(atoms, intervals(a.results, s)...)
+	atoms = append(atoms, groups(s)...)
+	atoms = append(atoms, intervals(s)...)
 	atoms = append(atoms, findings(s)...)
 	drawn := a.distribution(s)
 	const page = bottomEdge - topEdge
@@ -114,14 +114,23 @@ func (a *appendix) result(i int) {
 	a.flow.add(atoms...)
 }
 
+// withoutLabel takes the label off the beginning of a sentence that stands below a heading with the same label.
+func withoutLabel(sentence, label string) string {
+	rest, found := strings.CutPrefix(sentence, label+": ")
+	if !found {
+		return sentence
+	}
+	return capital(rest)
+}
+
 // estimates are the figures of a statistic beside its intervals.
-func estimates(r *record.Results, s *record.Statistic) []atom {
+func estimates(s *record.Statistic) []atom {
 	t := table{columns: []column{{title: "Estimate", align: right}, {title: "Standard error", align: right},
 		{title: "Bias", align: right}, {title: "Rows", align: right}, {title: "Units", align: right},
 		{title: "Resamples", align: right}, {title: "Without a value", align: right}, {title: "Unit"}},
-		size: small.size, before: 4, tight: true}
-	t.rows = [][]cell{{cellText(smallBold, sayEstimate(r, s)), cellText(small, sayStandardError(s)),
-		cellText(small, sayBias(s)), cellText(small, grouped(int64(s.N))), cellText(small, grouped(int64(s.Design.Units))),
+		size: small.size, before: 3, tight: true}
+	t.rows = [][]cell{{cellText(smallBold, estimateFigure(s)), cellText(small, standardErrorFigure(s)),
+		cellText(small, biasFigure(s)), cellText(small, grouped(int64(s.N))), cellText(small, grouped(int64(s.Design.Units))),
 		cellText(small, grouped(int64(s.Resamples))), cellText(small, grouped(int64(s.FailedResamples))),
 		cellText(small, orDash(s.Unit))}}
 	atoms := t.atoms()
@@ -137,23 +146,23 @@ func estimates(r *record.Results, s *record.Statistic) []atom {
 }
 
 // groups shows the two groups behind a comparison.
-func groups(r *record.Results, s *record.Statistic) []atom {
+func groups(s *record.Statistic) []atom {
 	c := s.Compare
 	if c == nil {
 		return nil
 	}
 	t := table{columns: []column{{title: "Group"}, {title: "Estimate", align: decimal}, {title: "Rows", align: right},
 		{title: "Units", align: right}},
-		size: small.size, before: 4, tight: true}
+		size: small.size, before: 3, tight: true}
 	for g := range c.Of {
-		t.rows = append(t.rows, []cell{cellText(small, c.By+" "+c.Of[g]), cellText(small, sayGroup(r, s, g)),
+		t.rows = append(t.rows, []cell{cellText(small, c.By+" "+c.Of[g]), cellText(small, groupFigure(s, g)),
 			cellText(small, grouped(int64(c.N[g]))), cellText(small, grouped(int64(c.Units[g])))})
 	}
 	return t.atoms()
 }
 
 // intervals lists the limits, those that decide in bold.
-func intervals(r *record.Results, s *record.Statistic) []atom {
+func intervals(s *record.Statistic) []atom {
 	if len(s.Intervals) == 0 {
 		return nil
 	}
@@ -172,20 +181,20 @@ func intervals(r *record.Results, s *record.Statistic) []atom {
 			column{title: "Monte-Carlo error", align: decimal})
 	}
 	columns = append(columns, column{title: "Use"})
-	t := table{columns: columns, size: small.size, before: 4}
+	t := table{columns: columns, size: small.size, before: 3}
 	var steps []string
 	for _, i := range s.Intervals {
 		st := small
 		if i.Decides {
 			st = smallBold
 		}
-		row := []cell{cellText(st, i.Method), cellText(st, sayPercent(i.Confidence))}
-		low, high := sayLimits(r, s, &i)
+		row := []cell{cellText(st, i.Method), cellText(st, confidenceText(i.Confidence))}
+		low, high := limitFigures(s, &i)
 		if lower {
-			row = append(row, cellText(st, low), cellText(small, sayMonteCarlo(i.MonteCarloError.Lower)))
+			row = append(row, cellText(st, low), cellText(small, errorFigure(i.MonteCarloError.Lower)))
 		}
 		if upper {
-			row = append(row, cellText(st, high), cellText(small, sayMonteCarlo(i.MonteCarloError.Upper)))
+			row = append(row, cellText(st, high), cellText(small, errorFigure(i.MonteCarloError.Upper)))
 		}
 		row = append(row, cellText(small, useText(&i)))
 		t.rows = append(t.rows, row)
@@ -222,14 +231,14 @@ func (a *appendix) distribution(s *record.Statistic) []atom {
 		return nil
 	}
 	fig := distribution{edges: d.Edges, counts: d.Counts, vertical: "resamples", axis: axisTitle(s),
-		estimate: marker{value: s.Estimate, label: "estimate " + sayEstimate(a.results, s)}}
+		estimate: marker{value: s.Estimate, label: "estimate " + estimateFigure(s)}}
 	for k := range s.Intervals {
 		i := &s.Intervals[k]
 		if !i.Decides && !(k == 0 && !decided(s)) {
 			continue
 		}
 		fig.bound = i.Bound
-		low, high := sayLimits(a.results, s, i)
+		low, high := limitFigures(s, i)
 		fig.lower = marker{value: i.Lower, label: "lower limit " + low}
 		fig.upper = marker{value: i.Upper, label: "upper limit " + high}
 	}
@@ -242,7 +251,7 @@ func (a *appendix) distribution(s *record.Statistic) []atom {
 		fig.criteria = append(fig.criteria, marker{value: &limit, label: "criterion " + criterionText(s, c),
 			least: c.Criterion == lowerAtLeast})
 	}
-	atoms := []atom{{before: 4.5, height: fig.height(), keep: true, draw: fig.draw}}
+	atoms := []atom{{before: 3.5, height: fig.height(), keep: true, draw: fig.draw}}
 	return together(append(atoms, caption(a.figureLabel(), figureCaption(s), 1)...))
 }
 

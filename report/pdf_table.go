@@ -253,6 +253,9 @@ func (t *table) atoms() []atom {
 		for k := range row[:len(row)-1] {
 			row[k].head = headAtoms
 		}
+		if i == 0 || i == len(t.rows)-2 { // no row stands alone at the foot or at the head of a page
+			row[len(row)-1].keep = i < len(t.rows)-1
+		}
 		out = append(out, row...)
 	}
 	out[0].before = t.before

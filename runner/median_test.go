@@ -15,8 +15,9 @@ import (
 )
 
 // checkExactMedian compares percentile limits of the median with its exact law: a limit must be a quantile of the law
-// whose level is within 5 standard errors of a rank of 0.025 or 0.975. In most cases only one value is; for the rivers the
-// step at 490 ends at 0.9746, so 490 and 500 both are. The mean of the resample values may differ by 5 standard errors.
+// whose level is within 5 standard errors of a rank of 0.025 or 0.975. In most cases only one value is; for the rivers
+// the step at 490 ends at 0.9746, so 490 and 500 both are. The mean of the resample values may differ by 5 standard
+// errors.
 func checkExactMedian(t *testing.T, c reference.Case, r *record.Statistic, resamples int) {
 	t.Helper()
 	d := reference.Data(t, c.Data)
@@ -31,7 +32,8 @@ func checkExactMedian(t *testing.T, c reference.Case, r *record.Statistic, resam
 	}
 	sd := math.Sqrt(squares - mean*mean)
 	// The law as computed here has the figures of the case, but for rounding.
-	for name, got := range map[string]float64{"mean": mean, "se": sd, "lower": quantileOf(law, 0.025), "upper": quantileOf(law, 0.975)} {
+	own := reference.Figures{"mean": mean, "se": sd, "lower": quantileOf(law, 0.025), "upper": quantileOf(law, 0.975)}
+	for name, got := range own {
 		if want := c.Expected[name]; math.Abs(got-want) > 1e-9*want {
 			t.Errorf("%s: the law gives %s = %.12g, the case has %.12g\nsource: %s", c.ID, name, got, want, c.Source)
 		}

@@ -50,7 +50,7 @@ var quantileOutOfReach = Definition{
 		n := float64(in.Record.Design.Units)
 		level := in.Plan.Confidence[0].Value
 		if in.Plan.Bound == spec.TwoSided {
-			level = 1 - (1-level)/2
+			level = 1 - float64((1-level)/2)
 		}
 		worst, side := 1.0, ""
 		if in.Plan.Bound != spec.Upper {

@@ -59,7 +59,7 @@ func bcaLimits(in *Input, tieWeight float64) Result {
 		// values, so their covariance enters.
 		c := float64(numeric.NormalDensity(at)*(1+1/float64(divisor*divisor))) / numeric.NormalDensity(z0)
 		variance := float64(level*(1-level)) + float64(float64(c*c)*float64(share*(1-share))) -
-			float64(2*c)*(min(level, share)-float64(level*share))
+			float64(2*c*(min(level, share)-float64(level*share)))
 		return point{v.Rank(k), v.spread(k, level) * math.Sqrt(max(0, variance)/float64(v.n))}, ""
 	}
 	if in.lower() {

@@ -43,5 +43,5 @@ func (v *Values) normalError(z float64) float64 {
 	ofMean := variance / n
 	ofSD := (v.fourth - float64(variance*variance)) / (4 * n * variance)
 	both := v.third / (2 * n * v.sd)
-	return math.Sqrt(max(0, ofMean+float64(float64(z*z)*ofSD)+float64(2*z)*both))
+	return math.Sqrt(max(0, ofMean+float64(float64(z*z)*ofSD)+float64(2*z*both)))
 }

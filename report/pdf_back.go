@@ -107,6 +107,9 @@ func (a *appendix) digests() {
 		}
 		users[s.Design.SHA256] = append(users[s.Design.SHA256], s.ID)
 	}
+	if len(order) == 0 && len(t.rows) == 0 {
+		return
+	}
 	for _, d := range order {
 		t.rows = append(t.rows, []cell{cellText(small, "design of "+strings.Join(users[d], ", ")), cellText(code, d)})
 	}

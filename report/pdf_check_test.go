@@ -52,8 +52,8 @@ func (d *document) text() string {
 	return b.String()
 }
 
-// checkPages fails if text leaves the sheet's margins, texts cover each other, a page is left empty, or a heading stands
-// at the foot of a page.
+// checkPages fails if text leaves the sheet's margins, texts cover each other, a page is left empty, or a heading
+// stands at the foot of a page.
 func checkPages(t *testing.T, d *document) {
 	t.Helper()
 	faults := 0

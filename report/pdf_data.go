@@ -127,6 +127,9 @@ func lineRanges(lines []int) string {
 
 // ledger says for each statistic how its rows add up.
 func (a *appendix) ledger() {
+	if len(a.results.Statistics) == 0 {
+		return
+	}
 	t := table{columns: []column{{title: "Statistic"}, {title: "Source", most: 24}, {title: "Rows where", most: 46},
 		{title: "Read", align: right}, {title: "Used", align: right}, {title: "Excluded", align: right},
 		{title: "Missing", align: right}, {title: "Outside", align: right}},

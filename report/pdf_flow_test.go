@@ -11,7 +11,8 @@ func numbersTable(rows int) table {
 	t := table{columns: []column{{title: "Name"}, {title: "Value", align: decimal}, {title: "Note"}}, size: small.size}
 	for i := range rows {
 		value := []string{"1.25", "−10.5", "130", "none", "0.00041"}[i%5]
-		t.rows = append(t.rows, []cell{cellText(small, fmt.Sprintf("row %d", i)), cellText(small, value), cellText(small, "–")})
+		name := fmt.Sprintf("row %d", i)
+		t.rows = append(t.rows, []cell{cellText(small, name), cellText(small, value), cellText(small, "–")})
 	}
 	return t
 }

@@ -110,7 +110,8 @@ func (a *appendix) worst() {
 					continue
 				}
 				t.rows = append(t.rows, []cell{{runs: plainRun(sentenceBold, severity), symbol: severitySymbol(severity)},
-					{runs: []run{{text: s.Label + ". ", style: sentence.in(accent), to: statisticName(i)}, {text: v.Text, style: sentence}}}})
+					{runs: []run{{text: s.Label + ". ", style: sentence.in(accent), to: statisticName(i)},
+						{text: v.Text, style: sentence}}}})
 			}
 		}
 	}

@@ -8,9 +8,11 @@ func (a *appendix) methodsPart() {
 	f.add(a.section(0, "Methods", "methods")...)
 	f.add(prose("Only what this study used is described. Numbers in square brackets lead to the references.")...)
 	a.methods("Statistics", "", statisticMethods(a.results))
-	f.add(a.section(1, "Resampling", "method resampling")...)
-	for _, text := range resamplingTexts(a.results) {
-		f.add(prose(text)...)
+	if texts := resamplingTexts(a.results); len(texts) > 0 {
+		f.add(a.section(1, "Resampling", "method resampling")...)
+		for _, text := range texts {
+			f.add(prose(text)...)
+		}
 	}
 	a.methods("Intervals", " interval", intervalMethods(a.results))
 	f.add(a.section(1, "Random streams and Monte-Carlo error", "method streams")...)

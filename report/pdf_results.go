@@ -11,6 +11,9 @@ import (
 // resultsPart shows all criteria on one scale, then each statistic by itself.
 func (a *appendix) resultsPart() {
 	a.flow.add(a.section(0, "Results", "results")...)
+	if len(a.results.Statistics) == 0 {
+		a.flow.add(prose("The record holds no statistic.")...)
+	}
 	a.overview()
 	for i := range a.results.Statistics {
 		a.result(i)

@@ -25,6 +25,6 @@ func (q iqrOf) Estimate(s *Sample) (float64, error) {
 		return 0, ErrTooFew
 	}
 	sorted := s.Sorted(0)
-	high := quantilePlace(q.definition, s.N(), ratio{3, 4}).at(sorted)
-	return number(high - quantilePlace(q.definition, s.N(), ratio{1, 4}).at(sorted))
+	high := quantilePlace(q.definition, s.N(), ratio{num: 3, den: 4}).at(sorted)
+	return number(high - quantilePlace(q.definition, s.N(), ratio{num: 1, den: 4}).at(sorted))
 }

@@ -12,5 +12,5 @@ var median = Definition{
 	Assumptions: "None on the shape. With ties the median moves in steps of the measurement.",
 	Sources:     []string{"ISO 3534-1:2006, Statistics — Vocabulary and symbols — Part 1, 1.13", maritzJarrett},
 	Unit:        sameUnit,
-	New:         func([]spec.Setting) Estimator { return &quantileOf{p: ratio{1, 2}, definition: 7} },
+	New:         func([]spec.Setting) Estimator { return &quantileOf{p: ratio{num: 1, den: 2}, definition: 7} },
 }

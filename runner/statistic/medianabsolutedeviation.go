@@ -16,8 +16,8 @@ var medianAbsoluteDeviation = Definition{
 	Formula:     "MAD = c · med| xᵢ − med(x) |",
 	Where:       "xᵢ are the observations, med is the median, c the factor (with: scale)",
 	Assumptions: "None on the shape; the usual reading as a spread supposes symmetry.",
-	Sources: []string{"Hampel FR. The influence curve and its role in robust estimation. Journal of the American Statistical " +
-		"Association 69 (1974) 383–393"},
+	Sources: []string{"Hampel FR. The influence curve and its role in robust estimation. Journal of the American " +
+		"Statistical Association 69 (1974) 383–393"},
 	Unit:   sameUnit,
 	Bounds: nonNegative,
 	New:    func(with []spec.Setting) Estimator { return madOf{with[0].Number} },
@@ -33,7 +33,7 @@ func (m madOf) Estimate(s *Sample) (float64, error) {
 		return 0, ErrTooFew
 	}
 	sorted := s.Sorted(0)
-	middle := quantilePlace(7, n, ratio{1, 2})
+	middle := quantilePlace(7, n, ratio{num: 1, den: 2})
 	centre := middle.at(sorted)
 	up := 0
 	for up < n && sorted[up] < centre {
@@ -56,7 +56,7 @@ func (m madOf) Estimate(s *Sample) (float64, error) {
 		}
 	}
 	if n%2 == 0 {
-		last = before/2 + last/2
+		last = halfWay(before, last)
 	}
 	return number(float64(m.scale * math.Abs(last)))
 }

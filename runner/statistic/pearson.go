@@ -7,17 +7,18 @@ import (
 )
 
 var pearson = Definition{
-	Name:        "Pearson correlation",
-	Columns:     2,
-	MinN:        2,
-	Summary:     "The product-moment correlation of two columns.",
-	Formula:     "r = Σ(xᵢ−x̄)(yᵢ−ȳ) / √( Σ(xᵢ−x̄)² · Σ(yᵢ−ȳ)² )",
-	Where:       "xᵢ, yᵢ are pairs of observations, x̄, ȳ their means",
-	Assumptions: "It measures a straight-line relation, depends on the range that was sampled, and follows single far points.",
-	Sources:     []string{"ISO 3534-1:2006, Statistics — Vocabulary and symbols — Part 1, 1.23"},
-	Unit:        noUnit,
-	Bounds:      correlationRange,
-	New:         func([]spec.Setting) Estimator { return pearsonOf{} },
+	Name:    "Pearson correlation",
+	Columns: 2,
+	MinN:    2,
+	Summary: "The product-moment correlation of two columns.",
+	Formula: "r = Σ(xᵢ−x̄)(yᵢ−ȳ) / √( Σ(xᵢ−x̄)² · Σ(yᵢ−ȳ)² )",
+	Where:   "xᵢ, yᵢ are pairs of observations, x̄, ȳ their means",
+	Assumptions: "It measures a straight-line relation, depends on the range that was sampled, and follows single " +
+		"far points.",
+	Sources: []string{"ISO 3534-1:2006, Statistics — Vocabulary and symbols — Part 1, 1.23"},
+	Unit:    noUnit,
+	Bounds:  correlationRange,
+	New:     func([]spec.Setting) Estimator { return pearsonOf{} },
 }
 
 type pearsonOf struct{}
@@ -50,7 +51,7 @@ func (pearsonOf) Influence(s *Sample, value float64, out []float64) error {
 	}
 	for i := range x {
 		u, v := (x[i]-m.x)/sx, (y[i]-m.y)/sy
-		out[i] = float64(u*v) - float64(value*(float64(u*u)+float64(v*v)))/2
+		out[i] = float64(u*v) - float64(float64(value*(float64(u*u)+float64(v*v)))/2)
 	}
 	return nil
 }

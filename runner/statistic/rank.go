@@ -1,111 +1,120 @@
 package statistic
 
-import (
-	"math/big"
-)
+import "math/big"
 
-// A ratio is a decimal number such as a probability or a trimmed share, exactly. Ranks are found from it in integers: in
-// binary, 0.1·30 is not 3.
-type ratio struct{ num, den int64 }
+// A ratio is a decimal number such as a probability or a trimmed share, exactly. Ranks are found from it in whole
+// numbers: in binary, 0.1·30 is not 3.
+type ratio struct {
+	num, den int64
+	long     *big.Rat // instead of num and den where they would be too long; never changed
+}
 
-// newRatio reads the digits of a plan. Digits that do not fit into 9 decimals are rounded to them; no sample is so large
-// that more could move a rank by one.
+// newRatio reads the digits of a plan.
 func newRatio(text string) ratio {
 	r, ok := new(big.Rat).SetString(text)
 	if !ok {
 		panic("statistic: not a decimal: " + text) // spec checks every number
 	}
-	const limit = 1_000_000_000
+	const limit = 1_000_000_000 // times 8·n this still is an int64, for all n that fit into memory
 	if r.Denom().IsInt64() && r.Denom().Int64() <= limit {
-		return ratio{r.Num().Int64(), r.Denom().Int64()}
+		return ratio{num: r.Num().Int64(), den: r.Denom().Int64()}
 	}
-	r.Mul(r, big.NewRat(limit, 1))
-	whole := new(big.Int).Quo(r.Num(), r.Denom())
-	return ratio{whole.Int64(), limit}
+	return ratio{long: r}
 }
 
 // floorOf returns ⌊n·r⌋.
-func (r ratio) floorOf(n int) int { return int(int64(n) * r.num / r.den) }
+func (r ratio) floorOf(n int) int {
+	if r.long == nil {
+		return int(int64(n) * r.num / r.den)
+	}
+	product := new(big.Int).Mul(big.NewInt(int64(n)), r.long.Num())
+	return int(product.Quo(product, r.long.Denom()).Int64())
+}
 
-// A place is the position of a quantile among n ordered values: between rank low and the next one, num/den of the way.
+// A place is the position of a quantile among n ordered values: from rank low, the share up of the way to the next one,
+// 0 ≤ up < 1.
 type place struct {
-	low      int
-	num, den int64
+	low int
+	up  float64
+}
+
+// positions are those of the nine definitions of Hyndman and Fan 1996, ((each·n + once)·p + add) / over.
+var positions = [9]struct{ each, once, add, over int64 }{
+	{1, 0, 0, 1},  // n·p
+	{1, 0, 0, 1},  // n·p
+	{2, 0, -1, 2}, // n·p − ½
+	{1, 0, 0, 1},  // n·p
+	{2, 0, 1, 2},  // n·p + ½
+	{1, 1, 0, 1},  // (n+1)·p
+	{1, -1, 1, 1}, // (n−1)·p + 1
+	{3, 1, 1, 3},  // (n+⅓)·p + ⅓
+	{8, 2, 3, 8},  // (n+¼)·p + ⅜
 }
 
 // quantilePlace returns the position of quantile p by one of the nine definitions of Hyndman and Fan 1996.
 func quantilePlace(definition, n int, p ratio) place {
-	a, b, m := p.num, p.den, int64(n)
-	var num, den int64
-	switch definition {
-	case 1, 2, 4: // n·p
-		num, den = m*a, b
-	case 3: // n·p − ½
-		num, den = 2*m*a-b, 2*b
-	case 5: // n·p + ½
-		num, den = 2*m*a+b, 2*b
-	case 6: // (n+1)·p
-		num, den = (m+1)*a, b
-	case 7: // (n−1)·p + 1
-		num, den = (m-1)*a+b, b
-	case 8: // (n+⅓)·p + ⅓
-		num, den = 3*m*a+a+b, 3*b
-	default: // 9: (n+¼)·p + ⅜
-		num, den = 8*m*a+2*a+3*b, 8*b
-	}
-	low := num / den
-	rest := num % den
-	if rest < 0 {
-		low--
-		rest += den
-	}
+	low, up, whole := position(definition, n, p)
 	switch definition {
 	case 1: // the next rank unless n·p is whole
-		rest = stepUp(rest, den)
+		if !whole {
+			up = 1
+		}
 	case 2: // half way if n·p is whole, else the next rank
-		if rest == 0 {
-			rest, den = 1, 2
-		} else {
-			rest = den
+		if up = 1; whole {
+			up = 0.5
 		}
-	case 3: // the even rank if half way, else the next one
-		if rest == 0 && low%2 == 0 {
-			rest = 0
-		} else {
-			rest = den
+	case 3: // of the ranks round n·p the nearer one; half way between them, the even one
+		if !whole || low%2 != 0 {
+			up = 1
 		}
 	}
-	if rest == den {
-		low, rest = low+1, 0
+	if up == 1 {
+		low, up = low+1, 0
 	}
-	if low < 1 {
-		return place{1, 0, 1}
+	switch {
+	case low < 1:
+		return place{1, 0}
+	case low >= n:
+		return place{n, 0}
 	}
-	if low >= m {
-		return place{n, 0, 1}
-	}
-	return place{int(low), rest, den}
+	return place{low, up}
 }
 
-func stepUp(rest, den int64) int64 {
-	if rest == 0 {
-		return 0
+// position returns the whole part and the rest of the position, and whether the rest is exactly 0; the rest alone is
+// rounded.
+func position(definition, n int, p ratio) (low int, rest float64, whole bool) {
+	c := positions[definition-1]
+	times := c.each*int64(n) + c.once
+	if p.long == nil {
+		num, den := times*p.num+c.add*p.den, c.over*p.den
+		quotient, remainder := num/den, num%den
+		if remainder < 0 {
+			quotient--
+			remainder += den
+		}
+		return int(quotient), float64(remainder) / float64(den), remainder == 0
 	}
-	return den
+	num := new(big.Int).Mul(big.NewInt(times), p.long.Num())
+	num.Add(num, new(big.Int).Mul(big.NewInt(c.add), p.long.Denom()))
+	den := new(big.Int).Mul(big.NewInt(c.over), p.long.Denom())
+	quotient, remainder := new(big.Int).DivMod(num, den, new(big.Int))
+	rest, _ = new(big.Rat).SetFrac(remainder, den).Float64()
+	return int(quotient.Int64()), rest, remainder.Sign() == 0
 }
 
 // at returns the value at the place in ascending values.
 func (p place) at(sorted []float64) float64 {
 	low := sorted[p.low-1]
-	if p.num == 0 {
+	if p.up == 0 {
 		return low
 	}
 	high := sorted[p.low]
-	if 2*p.num == p.den {
-		return low/2 + high/2
+	if p.up == 0.5 {
+		return halfWay(low, high)
 	}
-	return low + float64(float64(p.num)/float64(p.den)*(high-low))
+	return low + float64(p.up*(high-low))
 }
 
-// rank returns the place as a real number.
-func (p place) rank() float64 { return float64(p.low) + float64(p.num)/float64(p.den) }
+// halfWay returns the mean of two values, which cannot overflow. A compiler may turn a half into a product, so each is
+// rounded by itself like every other product.
+func halfWay(a, b float64) float64 { return float64(a/2) + float64(b/2) }

@@ -18,7 +18,8 @@ func TestConstant(t *testing.T) {
 			x[i], y[i] = v, r.NormFloat64()
 		}
 		s := sampleOf(x)
-		for _, name := range []string{"standard deviation", "variance", "interquartile range", "median absolute deviation"} {
+		for _, name := range []string{"standard deviation", "variance", "interquartile range",
+			"median absolute deviation"} {
 			if got := estimate(t, bind(t, name), s); got != 0 {
 				t.Fatalf("%s of %d times %v is %g", name, n, v, got)
 			}

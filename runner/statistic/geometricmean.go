@@ -13,10 +13,11 @@ var geometricMean = Definition{
 	Formula:     "G = exp( (1/n)·Σ ln xᵢ )",
 	Where:       "xᵢ are n observations",
 	Assumptions: "All observations are above 0; otherwise there is no value.",
-	Sources:     []string{"ISO 3534-1:2006, Statistics — Vocabulary and symbols — Part 1 (mean, note on the geometric mean)"},
-	Unit:        sameUnit,
-	Bounds:      nonNegative,
-	New:         func([]spec.Setting) Estimator { return geometricMeanOf{} },
+	Sources: []string{"ISO 3534-1:2006, Statistics — Vocabulary and symbols — Part 1 (mean, note on the geometric " +
+		"mean)"},
+	Unit:   sameUnit,
+	Bounds: nonNegative,
+	New:    func([]spec.Setting) Estimator { return geometricMeanOf{} },
 }
 
 type geometricMeanOf struct{}

@@ -104,7 +104,8 @@ func TestShiftAndScale(t *testing.T) {
 			codes, groups := s.Groups()
 			want := estimate(t, e, s)*math.Pow(a, u.scale) + u.shift*b
 			if got := estimate(t, e, NewSample(moved, s.N(), codes, groups)); !near(got, want, 1e-12) {
-				t.Fatalf("%s %v of %v·x + %v is %.17g, want %.17g; x = %v", u.name, u.settings, a, b, got, want, s.Column(0))
+				t.Fatalf("%s %v of %v·x + %v is %.17g, want %.17g; x = %v", u.name, u.settings, a, b, got, want,
+					s.Column(0))
 			}
 		}
 	}
@@ -233,7 +234,8 @@ func TestQuantilePlaces(t *testing.T) {
 					8: new(big.Rat).Quo(new(big.Rat).Add(p, one), big.NewRat(3, 1)),
 					9: new(big.Rat).Add(new(big.Rat).Quo(p, big.NewRat(4, 1)), big.NewRat(3, 8))}[definition]
 				at := new(big.Rat).Add(new(big.Rat).Mul(p, big.NewRat(int64(n), 1)), m)
-				j := int(new(big.Int).Div(at.Num(), at.Denom()).Int64()) // Euclidean: the floor, as the divisor is positive
+				// Euclidean division: the floor, as the divisor is positive.
+				j := int(new(big.Int).Div(at.Num(), at.Denom()).Int64())
 				g, _ := new(big.Rat).Sub(at, big.NewRat(int64(j), 1)).Float64()
 				switch definition {
 				case 1:
@@ -256,7 +258,8 @@ func TestQuantilePlaces(t *testing.T) {
 				text := strconv.FormatFloat(float64(k)/40, 'f', -1, 64)
 				e := bind(t, "quantile", text, strconv.Itoa(definition))
 				if got := estimate(t, e, sampleOf(x[:n])); !near(got, want, 1e-14) {
-					t.Fatalf("definition %d, n %d, p %s: %v, want %v (j %d, g %v)", definition, n, text, got, want, j, g)
+					t.Fatalf("definition %d, n %d, p %s: %v, want %v (j %d, g %v)", definition, n, text, got, want,
+						j, g)
 				}
 			}
 		}

@@ -3,16 +3,17 @@ package statistic
 import "lotproof/spec"
 
 var mean = Definition{
-	Name:        "mean",
-	Columns:     1,
-	MinN:        1,
-	Summary:     "The arithmetic mean.",
-	Formula:     "x̄ = (1/n)·Σxᵢ",
-	Where:       "xᵢ are n observations",
-	Assumptions: "The population has a mean, and single large observations are not mistakes: the mean follows every one of them.",
-	Sources:     []string{"ISO 3534-1:2006, Statistics — Vocabulary and symbols — Part 1, 1.15"},
-	Unit:        sameUnit,
-	New:         func([]spec.Setting) Estimator { return meanOf{} },
+	Name:    "mean",
+	Columns: 1,
+	MinN:    1,
+	Summary: "The arithmetic mean.",
+	Formula: "x̄ = (1/n)·Σxᵢ",
+	Where:   "xᵢ are n observations",
+	Assumptions: "The population has a mean, and single large observations are not mistakes: the mean follows every " +
+		"one of them.",
+	Sources: []string{"ISO 3534-1:2006, Statistics — Vocabulary and symbols — Part 1, 1.15"},
+	Unit:    sameUnit,
+	New:     func([]spec.Setting) Estimator { return meanOf{} },
 }
 
 type meanOf struct{}

@@ -11,13 +11,14 @@ var repeatability = Definition{
 	Columns: 1,
 	Parameters: []spec.Parameter{{Name: "factor", Kind: spec.KindCategory,
 		Summary: "The column within whose levels the readings are repeats."}},
-	MinN:        2,
-	Summary:     "The pooled standard deviation within the levels of one factor.",
-	Formula:     "s_r = √( ΣΣ(xᵢⱼ − x̄ᵢ)² / (N − k) )",
-	Where:       "xᵢⱼ is reading j in level i, x̄ᵢ the mean of level i, N the number of readings, k that of levels",
-	Assumptions: "Readings within a level differ by repeatability alone and with the same spread everywhere. Levels with one reading tell nothing.",
-	Sources: []string{"ISO 5725-2:2019, Accuracy (trueness and precision) of measurement methods and results — Part 2: Basic method " +
-		"for the determination of repeatability and reproducibility of a standard measurement method"},
+	MinN:    2,
+	Summary: "The pooled standard deviation within the levels of one factor.",
+	Formula: "s_r = √( ΣΣ(xᵢⱼ − x̄ᵢ)² / (N − k) )",
+	Where:   "xᵢⱼ is reading j in level i, x̄ᵢ the mean of level i, N the number of readings, k that of levels",
+	Assumptions: "Readings within a level differ by repeatability alone and with the same spread everywhere. Levels " +
+		"with one reading tell nothing.",
+	Sources: []string{"ISO 5725-2:2019, Accuracy (trueness and precision) of measurement methods and results — Part " +
+		"2: Basic method for the determination of repeatability and reproducibility of a standard measurement method"},
 	Unit:   sameUnit,
 	Bounds: nonNegative,
 	New:    func([]spec.Setting) Estimator { return repeatabilityOf{} },
@@ -33,8 +34,9 @@ func (repeatabilityOf) Estimate(s *Sample) (float64, error) {
 	return number(math.Sqrt(squares / df))
 }
 
-// within returns the sum of squares within groups and its degrees of freedom. Means are taken about the first reading of
-// each group, so that equal readings give exactly 0. The scratch holds, for each group, number, mean and first reading.
+// within returns the sum of squares within groups and its degrees of freedom. Means are taken about the first reading
+// of each group, so that equal readings give exactly 0. The scratch holds, for each group, number, mean and first
+// reading.
 func within(s *Sample) (squares, df float64) {
 	x := s.Column(0)
 	codes, groups := s.Groups()

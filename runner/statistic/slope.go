@@ -53,8 +53,8 @@ func (l lineOf) Estimate(s *Sample) (float64, error) {
 	return number(b)
 }
 
-// Influence is (x − x̄)·e/m_xx for the slope and e − x̄·L(b) for the intercept, with residuals e and the mean square m_xx
-// of x about its mean.
+// Influence is (x − x̄)·e/m_xx for the slope and e − x̄·L(b) for the intercept, with residuals e and the mean square
+// m_xx of x about its mean.
 func (l lineOf) Influence(s *Sample, _ float64, out []float64) error {
 	x, y := s.Column(0), s.Column(1)
 	m := moments(x, y)

@@ -3,15 +3,16 @@ package statistic
 import "lotproof/spec"
 
 var spearman = Definition{
-	Name:        "Spearman correlation",
-	Columns:     2,
-	MinN:        2,
-	Summary:     "The product-moment correlation of the ranks of two columns; tied observations share the mean of their ranks.",
+	Name:    "Spearman correlation",
+	Columns: 2,
+	MinN:    2,
+	Summary: "The product-moment correlation of the ranks of two columns; tied observations share the mean of " +
+		"their ranks.",
 	Formula:     "r_S = r( rank(x), rank(y) )",
 	Where:       "r is the Pearson correlation, rank gives 1 to the smallest observation",
 	Assumptions: "It measures a monotone relation and depends on the range that was sampled.",
-	Sources: []string{"Spearman C. The proof and measurement of association between two things. American Journal of Psychology 15 (1904) " +
-		"72–101", "Kendall MG. Rank Correlation Methods. Griffin 1948, chapter 3 (ties)"},
+	Sources: []string{"Spearman C. The proof and measurement of association between two things. American Journal of " +
+		"Psychology 15 (1904) 72–101", "Kendall MG. Rank Correlation Methods. Griffin 1948, chapter 3 (ties)"},
 	Unit:   noUnit,
 	Bounds: correlationRange,
 	New:    func([]spec.Setting) Estimator { return spearmanOf{} },

@@ -7,17 +7,18 @@ import (
 )
 
 var standardDeviation = Definition{
-	Name:        "standard deviation",
-	Columns:     1,
-	MinN:        2,
-	Summary:     "The sample standard deviation with divisor n − 1.",
-	Formula:     "s = √( Σ(xᵢ − x̄)² / (n − 1) )",
-	Where:       "xᵢ are n observations, x̄ is their mean",
-	Assumptions: "The population has a fourth moment if the interval is to mean anything. The estimate is a little low on average with few observations.",
-	Sources:     []string{"ISO 3534-1:2006, Statistics — Vocabulary and symbols — Part 1, 1.17", chan1983},
-	Unit:        sameUnit,
-	Bounds:      nonNegative,
-	New:         func([]spec.Setting) Estimator { return standardDeviationOf{} },
+	Name:    "standard deviation",
+	Columns: 1,
+	MinN:    2,
+	Summary: "The sample standard deviation with divisor n − 1.",
+	Formula: "s = √( Σ(xᵢ − x̄)² / (n − 1) )",
+	Where:   "xᵢ are n observations, x̄ is their mean",
+	Assumptions: "The population has a fourth moment if the interval is to mean anything. The estimate is a little " +
+		"low on average with few observations.",
+	Sources: []string{"ISO 3534-1:2006, Statistics — Vocabulary and symbols — Part 1, 1.17", chan1983},
+	Unit:    sameUnit,
+	Bounds:  nonNegative,
+	New:     func([]spec.Setting) Estimator { return standardDeviationOf{} },
 }
 
 type standardDeviationOf struct{}

@@ -37,13 +37,14 @@ type Estimator interface {
 type Influencer interface {
 	Estimator
 	// Influence sets out[i] to the empirical influence value of observation i, in the unit of the statistic:
-	// the derivative of the statistic, as a functional of the weights, at the sample (Efron 1982, chapter 6). The values
-	// sum to 0 within rounding, and sqrt(Σ out[i]²)/n is the delta-method standard error for independent observations.
-	// value is what Estimate returned for s. out has length s.N().
+	// the derivative of the statistic, as a functional of the weights, at the sample (Efron 1982, chapter 6). The
+	// values sum to 0 within rounding, and sqrt(Σ out[i]²)/n is the delta-method standard error for independent
+	// observations. value is what Estimate returned for s. out has length s.N().
 	Influence(s *Sample, value float64, out []float64) error
 }
 
-// A StandardErrorer has a standard error of its own, for independent observations, that is not made of influence values.
+// A StandardErrorer has a standard error of its own, for independent observations, that is not made of influence
+// values.
 type StandardErrorer interface {
 	Estimator
 	StandardError(s *Sample, value float64) (float64, error)

@@ -7,13 +7,14 @@ var trimmedMean = Definition{
 	Columns: 1,
 	Parameters: []spec.Parameter{{Name: "trim", Kind: spec.KindNumber, Min: 0, Max: 0.5, MinIncluded: true,
 		Summary: "The share taken off at each end: 0.1 leaves the middle 80 %."}},
-	MinN:        1,
-	Summary:     "The mean of what is left when the smallest and the largest observations are taken off.",
-	Formula:     "x̄ₜ = ( x₍g₊₁₎ + … + x₍ₙ₋g₎ ) / (n − 2g),  g = ⌊n·trim⌋",
-	Where:       "x₍ⱼ₎ is the j-th smallest of n observations",
-	Assumptions: "What it estimates is the mean only if the distribution is symmetric; otherwise it is a location of its own.",
-	Sources: []string{"Tukey JW, McLaughlin DH. Less vulnerable confidence and significance procedures for location based on a single " +
-		"sample. Sankhyā A 25 (1963) 331–352"},
+	MinN:    1,
+	Summary: "The mean of what is left when the smallest and the largest observations are taken off.",
+	Formula: "x̄ₜ = ( x₍g₊₁₎ + … + x₍ₙ₋g₎ ) / (n − 2g),  g = ⌊n·trim⌋",
+	Where:   "x₍ⱼ₎ is the j-th smallest of n observations",
+	Assumptions: "What it estimates is the mean only if the distribution is symmetric; otherwise it is a location of " +
+		"its own.",
+	Sources: []string{"Tukey JW, McLaughlin DH. Less vulnerable confidence and significance procedures for location " +
+		"based on a single sample. Sankhyā A 25 (1963) 331–352"},
 	Unit: sameUnit,
 	New:  func(with []spec.Setting) Estimator { return trimmedOf{newRatio(with[0].Text)} },
 }

@@ -16,8 +16,8 @@ var variance = Definition{
 	New:         func([]spec.Setting) Estimator { return varianceOf{} },
 }
 
-const chan1983 = "Chan TF, Golub GH, LeVeque RJ. Algorithms for computing the sample variance: analysis and recommendations. " +
-	"The American Statistician 37 (1983) 242–247"
+const chan1983 = "Chan TF, Golub GH, LeVeque RJ. Algorithms for computing the sample variance: analysis and " +
+	"recommendations. The American Statistician 37 (1983) 242–247"
 
 type varianceOf struct{}
 

@@ -6,8 +6,8 @@ import (
 	"testing"
 )
 
-// Equal observations have no spread, exactly: no rounding of their mean may look like one, or a resample of one value
-// drawn n times would pass for a very precise one.
+// Equal observations have their value as mean and median and no spread, exactly: no rounding of the mean may look like
+// one, or a resample of one value drawn n times would pass for a very precise one.
 func TestConstant(t *testing.T) {
 	r := rand.New(rand.NewPCG(11, 7))
 	for range 3000 {
@@ -23,6 +23,14 @@ func TestConstant(t *testing.T) {
 			if got := estimate(t, bind(t, name), s); got != 0 {
 				t.Fatalf("%s of %d times %v is %g", name, n, v, got)
 			}
+		}
+		for _, name := range []string{"mean", "median"} {
+			if got := estimate(t, bind(t, name), s); got != v {
+				t.Fatalf("%s of %d times %.17g is %.17g", name, n, v, got)
+			}
+		}
+		if got, err := bind(t, "median").(StandardErrorer).StandardError(s, v); got != 0 || err != nil {
+			t.Fatalf("standard error of the median of %d times %v is %g, %v", n, v, got, err)
 		}
 		for i := range x {
 			x[i] = steady

@@ -16,7 +16,7 @@ var pseudoReplication = Definition{
 	Code: "pseudo-replication",
 	Summary: "Rows that belong together are drawn as if they were independent: for every category or text column that groups whole resampling " +
 		"units and is neither a stratum nor part of the comparison, the intraclass correlation of what the units contribute to the statistic: " +
-		"their influence values, or the observations where a quantile has none. Above 0.05 with a design effect above 1.2 and P < 0.01 in the " +
+		"their influence values, or the observations where a quantile has none. Above 0.05 with a design effect above 1.2 and P < 0.025 in the " +
 		"analysis of variance it is a stop with 5 groups or more, a caution with fewer. Not checked for a Spearman correlation.",
 	Action: "Name the group as the resampling unit, or draw within its levels as strata if they are all there is.",
 	Source: "Design effect 1 + (m−1)·ICC: Kish L. Survey Sampling. Wiley 1965, section 5.4 (cited from memory); thresholds of this program",
@@ -118,7 +118,7 @@ func (in *Input) clustered(name string, texts []string) *finding {
 	effect := 1 + float64((size-1)*icc)
 	x := float64((all-k)*withinMean) / (float64((all-k)*withinMean) + float64((k-classes)*betweenMean))
 	p := numeric.IncompleteBeta((all-k)/2, (k-classes)/2, x) // upper tail of F
-	if icc <= 0.05 || effect <= 1.2 || p >= 0.01 {
+	if icc <= 0.05 || effect <= 1.2 || p >= 0.025 {
 		return nil
 	}
 	what := "Units"

@@ -12,8 +12,8 @@ var chiSquare = Definition{
 	Classical:  true,
 	Summary: "The classical interval of a variance or standard deviation: the sum of squares divided by quantiles of the chi-square " +
 		"distribution. Strata are not taken into account.",
-	Formula: "s²(n−1)/χ²₁₋α(n−1)  to  s²(n−1)/χ²α(n−1); square roots for a standard deviation",
-	Where:   "s² is the variance of n observations, χ²α(ν) the quantile α of the chi-square distribution, α the probability beyond each limit",
+	Formula: "s²(n−1)/χ²_(1−α)(n−1)  to  s²(n−1)/χ²_α(n−1); square roots for a standard deviation",
+	Where:   "s² is the variance of n observations, χ²_α(ν) the quantile α of the chi-square distribution, α the probability beyond each limit",
 	Limits: "Exact for independent normal observations only, and badly wrong for others at every n: long tails make it too short, " +
 		"short tails too long.",
 	Sources: []string{"Box GEP. Non-normality and tests on variances. Biometrika 40 (1953) 318–335",

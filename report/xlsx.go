@@ -353,21 +353,32 @@ func (s *bookSheet) cell(column, row int) string {
 	return name
 }
 
-// text writes text into a cell and makes the row high enough. Text of more than a cell holds must have been cut before.
+// text writes text into a cell and makes the row high enough.
 func (s *bookSheet) text(column int, text string, l look) {
 	s.write(column, text, l)
 	s.fit(column, column, text, l)
 }
 
+// write puts text into a cell. What a cell cannot hold is cut, and says so: texts as long come from the plan, which
+// stands whole on a sheet of its own.
 func (s *bookSheet) write(column int, text string, l look) {
 	if s.err != nil {
 		return
 	}
 	at := s.cell(column, s.row)
 	if text != "" {
-		s.keep(s.file.SetCellStr(s.name, at, escaped(clean(text))))
+		s.keep(s.file.SetCellStr(s.name, at, fitted(escaped(clean(text)))))
 	}
 	s.keep(s.file.SetCellStyle(s.name, at, at, s.style(l)))
+}
+
+// fitted cuts a text that a cell cannot hold.
+func fitted(text string) string {
+	const note = " … (cut; the whole text is in the record and the plan)"
+	if cutUnits(text, cellLetters) == text {
+		return text
+	}
+	return cutUnits(text, cellLetters-len(note)) + note
 }
 
 // number writes a finite number with all its digits; the library's own setters keep only 15 of them.
@@ -446,7 +457,7 @@ func (s *bookSheet) plot(column, row int, p plotted) {
 	zero := 0.0
 	chart := &excelize.Chart{
 		Type:      excelize.Scatter,
-		Format:    excelize.GraphicOptions{Name: p.name, AltText: p.name},
+		Format:    excelize.GraphicOptions{Name: cutUnits(clean(p.name), 200), AltText: cutUnits(clean(p.name), 200)},
 		Legend:    excelize.ChartLegend{Position: "bottom", Font: &legend},
 		Dimension: excelize.ChartDimension{Width: 640, Height: 430},
 		Border:    excelize.LineOptions{Type: excelize.LineNone},

@@ -34,6 +34,7 @@ func (b *book) decisionSheet() {
 	first := s.row
 	s.heading("How to read this")
 	texts := append([]string{comparisonText(b.results)}, validityTexts(b.results)...)
+	texts = append(texts, study.Disclaimers...)
 	for _, text := range texts {
 		if text != "" {
 			s.wide(1, decisionColumns, text, bookText)

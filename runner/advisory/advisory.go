@@ -106,11 +106,6 @@ func (in *Input) resampled() bool {
 	return false
 }
 
-// asks says whether the plan asks for one of the methods.
-func (in *Input) asks(methods ...string) bool {
-	return slices.ContainsFunc(in.Plan.Intervals, func(name string) bool { return slices.Contains(methods, name) })
-}
-
 // decides says whether the interval that carries the verdict, the first, is one of the methods.
 func (in *Input) decides(methods ...string) bool {
 	return slices.Contains(methods, in.Plan.Intervals[0])

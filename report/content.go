@@ -70,15 +70,6 @@ func decisionSentence(r *record.Results, s *record.Statistic, a *record.Accept) 
 // byCompanion parts the verdict from the reason why the companion decided, in the words of the runner.
 const byCompanion = "; decided by the companion, as the plan says: "
 
-// whyText is the reason of a verdict as a sentence.
-func whyText(a *record.Accept) string {
-	text := strings.Replace(a.Why, byCompanion, ". The companion decided, as the plan says: ", 1)
-	if text == "" {
-		return ""
-	}
-	return strings.ToUpper(text[:1]) + text[1:] + "."
-}
-
 // comparedText names the two groups of a comparison.
 func comparedText(c *record.Compare) string {
 	if c.As == "ratio" {
@@ -251,13 +242,6 @@ func orElse(text, other string) string {
 		return other
 	}
 	return text
-}
-
-// runText says which run this is.
-func runText(rec *record.Record) string {
-	return fmt.Sprintf("Run %d of study %s, started %s and finished %s (UTC) on %s.", rec.Run.Number,
-		rec.Results.Plan.Study,
-		rec.Run.Started, rec.Run.Finished, rec.Run.System)
 }
 
 // notStated stands where a plan says nothing.

@@ -340,27 +340,5 @@ func biasFigure(s *record.Statistic) string {
 	return fixedText(*s.Bias, supported(standardErrorDecimals(s)+1, &e))
 }
 
-// lowerFigure and upperFigure write one limit of an interval, without unit.
-func lowerFigure(i *record.Interval, s *record.Statistic) string {
-	lower, _ := limitFigures(s, i)
-	return lower
-}
-
-func upperFigure(i *record.Interval, s *record.Statistic) string {
-	_, upper := limitFigures(s, i)
-	return upper
-}
-
-// Names under which the appendix calls them.
-func sayEstimate(_ *record.Results, s *record.Statistic) string { return estimateFigure(s) }
-func sayLimits(_ *record.Results, s *record.Statistic, i *record.Interval) (string, string) {
-	return limitFigures(s, i)
-}
-func sayGroup(_ *record.Results, s *record.Statistic, g int) string { return groupFigure(s, g) }
-func sayStandardError(s *record.Statistic) string                   { return standardErrorFigure(s) }
-func sayBias(s *record.Statistic) string                            { return biasFigure(s) }
-func sayPercent(level string) string                                { return confidenceText(level) }
-func sayMonteCarlo(e *float64) string                               { return errorFigure(e) }
-
 // countText writes a whole number with a narrow space between thousands.
 func countText(n int) string { return grouped(int64(n)) }

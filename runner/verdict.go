@@ -3,9 +3,11 @@ package runner
 import (
 	"fmt"
 	"math/big"
+	"slices"
 	"strconv"
 	"strings"
 
+	"lotproof/runner/advisory"
 	"lotproof/runner/record"
 	"lotproof/spec"
 )
@@ -174,6 +176,9 @@ func decide(p *spec.Statistic, s *record.Statistic) (*record.Interval, string) {
 			return first, ""
 		}
 		why = "stopped by " + strings.Join(stops, ", ")
+		if slices.ContainsFunc(stops, advisory.StopsEvery) {
+			return nil, why
+		}
 	}
 	if p.Companion == "decides" && companion != nil {
 		if companion.Reason != "" {

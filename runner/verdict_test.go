@@ -148,6 +148,8 @@ func TestDecide(t *testing.T) {
 		{"stopped", "shown", []record.Interval{good, other}, stop, "", NotShown, "stopped by few units"},
 		{"stopped, companion decides", "decides", []record.Interval{good, other}, stop, "order statistic", Met,
 			"the bound is on the right side of the criterion; decided by the companion, as the plan says: stopped by few units"},
+		{"rows that are not independent", "decides", []record.Interval{good, other},
+			[]record.Advisory{{Code: "pseudo-replication", Severity: "stop"}}, "", NotShown, "stopped by pseudo-replication"},
 		{"no limit", "shown", []record.Interval{none, other}, nil, "", NotShown, "no bca limit: of a reason"},
 		{"no limit, companion decides", "decides", []record.Interval{none, other}, nil, "order statistic", Met,
 			"the bound is on the right side of the criterion; decided by the companion, as the plan says: no bca limit: of a reason"},

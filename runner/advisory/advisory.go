@@ -29,6 +29,7 @@ type Definition struct {
 	Summary string // what is checked and the thresholds
 	Action  string // what the analyst should do
 	Source  string // where the rule comes from
+	Every   bool   // a stop concerns every method on these rows, companions too
 	check   func(in *Input) *finding
 }
 
@@ -77,6 +78,11 @@ func Check(in *Input) []record.Advisory {
 	order := map[string]int{Stop: 0, Caution: 1, Note: 2}
 	slices.SortStableFunc(out, func(a, b record.Advisory) int { return order[a.Severity] - order[b.Severity] })
 	return out
+}
+
+// StopsEvery says whether a stop with this code leaves no method to decide, not even a companion.
+func StopsEvery(code string) bool {
+	return slices.ContainsFunc(registry, func(d *Definition) bool { return d.Code == code && d.Every })
 }
 
 func (d *Definition) advisory(f *finding) record.Advisory {

@@ -20,6 +20,7 @@ var pseudoReplication = Definition{
 		"analysis of variance it is a stop with 5 groups or more, a caution with fewer. Not checked for a Spearman correlation.",
 	Action: "Name the group as the resampling unit, or draw within its levels as strata if they are all there is.",
 	Source: "Design effect 1 + (m−1)·ICC: Kish L. Survey Sampling. Wiley 1965, section 5.4 (cited from memory); thresholds of this program",
+	Every:  true,
 	check: func(in *Input) *finding {
 		if in.Contribution == nil {
 			return nil

@@ -120,8 +120,8 @@ func TestTablesOfTheReadme(t *testing.T) {
 		s := statistic(t, r, row[0])
 		lower := s.Intervals[0].Lower
 		gap[i] = *s.Estimate - *lower
-		if !strings.HasPrefix(row[1], strconv.Itoa(s.Design.Units)+" ") || !agrees(row[2], s.Estimate) || !agrees(row[3], lower) ||
-			!agrees(row[4], &gap[i]) {
+		if !strings.HasPrefix(row[1], strconv.Itoa(s.Design.Units)+" ") || !agrees(row[2], s.Estimate) ||
+			!agrees(row[3], lower) || !agrees(row[4], &gap[i]) {
 			t.Errorf("README.md says %q; the run: %d units, %v, %v", row, s.Design.Units, *s.Estimate, *lower)
 		}
 	}
@@ -148,7 +148,8 @@ func TestTrapsAreNamed(t *testing.T) {
 			}
 		}
 	}
-	if want := []string{"p10 12 weeks: quantile out of reach", "mean by strips: pseudo-replication"}; !slices.Equal(stops, want) {
+	want := []string{"p10 12 weeks: quantile out of reach", "mean by strips: pseudo-replication"}
+	if !slices.Equal(stops, want) {
 		t.Errorf("stops %q, want %q", stops, want)
 	}
 }
@@ -171,7 +172,8 @@ func TestPocketCalculator(t *testing.T) {
 	rows := tables(t, "Pouches", "Probability")
 	for _, row := range rows {
 		n := number(t, row[0])
-		if percent := 100 * (1 - math.Pow(0.9, n)); !agrees(strings.TrimSuffix(row[1], " %"), &percent) || (percent >= 95) != (row[2] == "the smallest") {
+		percent := 100 * (1 - math.Pow(0.9, n))
+		if !agrees(strings.TrimSuffix(row[1], " %"), &percent) || (percent >= 95) != (row[2] == "the smallest") {
 			t.Errorf("README.md says %q; it is %.2f %%", row, percent)
 		}
 	}

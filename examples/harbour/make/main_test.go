@@ -22,8 +22,8 @@ func TestFilesAreWhatIsMade(t *testing.T) {
 	}
 }
 
-// The truth is what README.md says it is, seen in so many pouches that chance no longer matters. The tolerances are half
-// a unit of the last digit in README.md, and for the percentile one step of the instrument.
+// The truth is what README.md says it is, seen in so many pouches that chance no longer matters. The tolerances are
+// half a unit of the last digit in README.md, and for the percentile one step of the instrument.
 func TestTruth(t *testing.T) {
 	const n = 60000 // pouches of each age; standard errors are at most a third of the tolerances
 	tests := []struct {

@@ -5,11 +5,9 @@ import (
 	"fmt"
 	"io"
 	"math"
-	"regexp"
 	"strconv"
 	"strings"
 	"time"
-	"unicode/utf16"
 
 	"github.com/xuri/excelize/v2"
 
@@ -18,11 +16,12 @@ import (
 )
 
 // Workbook writes the results workbook of a run: decisions first, then every figure with all its digits, the rows as
-// analysed, the resample values, the methods, the plan and the provenance. It depends on the record and the rows alone and
-// gives the same bytes every time; dates in the file are those of the run. data are those that the record was made from,
-// with one ledger for each statistic.
+// analysed, the resample values, the methods, the plan and the provenance. It depends on the record and the rows alone
+// and gives the same bytes every time; dates in the file are those of the run. data are those that the record was made
+// from, with one ledger for each statistic.
 //
-// Results are stored as values, never as formulas, so no viewer computes them anew. Text stays text, whatever it looks like.
+// Results are stored as values, never as formulas, so no viewer computes them anew. Text stays text, whatever it looks
+// like.
 func Workbook(w io.Writer, rec *record.Record, data *source.Data) error {
 	b, err := newBook(rec, data)
 	if err != nil {
@@ -58,10 +57,12 @@ type book struct {
 
 func newBook(rec *record.Record, data *source.Data) (*book, error) {
 	if len(data.Selections) != len(rec.Results.Statistics) || len(data.Tables) != len(rec.Results.Sources) {
-		return nil, fmt.Errorf("the record has %d statistics and %d sources, the data have %d and %d; take the data of the record's own run",
+		return nil, fmt.Errorf("the record has %d statistics and %d sources, the data have %d and %d; "+
+			"take the data of the record's own run",
 			len(rec.Results.Statistics), len(rec.Results.Sources), len(data.Selections), len(data.Tables))
 	}
-	b := &book{rec: rec, results: &rec.Results, data: data, file: excelize.NewFile(), looks: map[look]int{}, taken: map[string]bool{}}
+	b := &book{rec: rec, results: &rec.Results, data: data, file: excelize.NewFile(),
+		looks: map[look]int{}, taken: map[string]bool{}}
 	b.keep(b.file.SetDefaultFont(bookFont))
 	return b, nil
 }
@@ -87,7 +88,8 @@ func (b *book) write(w io.Writer) error {
 	study := &b.results.Plan.Resolved.Study
 	at := b.started().Format(time.RFC3339)
 	b.keep(b.file.SetDocProps(&excelize.DocProperties{Creator: program, LastModifiedBy: program, Created: at, Modified: at,
-		Title: clean(study.ID + " – " + study.Title), Subject: "Results workbook, run " + strconv.Itoa(b.rec.Run.Number), Language: "en-GB"}))
+		Title: clean(study.ID + " – " + study.Title), Subject: "Results workbook, run " + strconv.Itoa(b.rec.Run.Number),
+		Language: "en-GB"}))
 	b.keep(b.file.SetAppProps(&excelize.AppProperties{Application: program}))
 	for _, p := range [][2]string{{"plan SHA-256", b.results.Plan.SHA256}, {"results SHA-256", b.rec.ResultsSHA256},
 		{"seed", strconv.FormatUint(b.results.Plan.Resolved.Seed.Value, 10)}} {
@@ -201,7 +203,8 @@ type bookSheet struct {
 
 // sheet adds a sheet. wide is landscape; widths are those of the columns, in digits of the standard font.
 func (b *book) sheet(name, about string, wide bool, widths ...float64) *bookSheet {
-	s := &bookSheet{book: b, name: b.sheetName(name), about: about, row: 1, widths: widths, heights: map[int]float64{}, letters: map[int]int{}, page: 1}
+	s := &bookSheet{book: b, name: b.sheetName(name), about: about, row: 1, widths: widths, page: 1,
+		heights: map[int]float64{}, letters: map[int]int{}}
 	if len(b.sheets) == 0 {
 		b.keep(b.file.SetSheetName("Sheet1", s.name))
 	} else {
@@ -218,39 +221,6 @@ func (b *book) sheet(name, about string, wide bool, widths ...float64) *bookShee
 	return s
 }
 
-var unfit = strings.NewReplacer(":", " ", `\`, " ", "/", " ", "?", " ", "*", " ", "[", "(", "]", ")")
-
-// sheetName makes a name fit: at most 31 UTF-16 units, none of the forbidden signs, no apostrophe at either end, unique.
-func (b *book) sheetName(name string) string {
-	base := strings.Trim(strings.TrimSpace(unfit.Replace(clean(name))), "'")
-	if base == "" || strings.EqualFold(base, "history") { // one name is reserved
-		base += " sheet"
-	}
-	for n := 1; ; n++ {
-		suffix := ""
-		if n > 1 {
-			suffix = " " + strconv.Itoa(n)
-		}
-		full := strings.TrimRight(cutUnits(base, 31-len(suffix)), "' ") + suffix
-		if key := strings.ToLower(full); !b.taken[key] {
-			b.taken[key] = true
-			return full
-		}
-	}
-}
-
-// cutUnits cuts text to a number of UTF-16 units, between characters.
-func cutUnits(text string, units int) string {
-	n := 0
-	for i, r := range text {
-		n += max(utf16.RuneLen(r), 1)
-		if n > units {
-			return text[:i]
-		}
-	}
-	return text
-}
-
 // pageSetup sets paper, margins, head and foot.
 func (s *bookSheet) pageSetup(wide bool) {
 	paper, orientation, once, many, yes, no := 9, "portrait", 1, 0, true, false
@@ -264,12 +234,12 @@ func (s *bookSheet) pageSetup(wide bool) {
 		width += 6*w + 4
 	}
 	s.paper = 0.96 * down * max(1, width/across)
-	s.keep(s.file.SetPageLayout(s.name, &excelize.PageLayoutOptions{Size: &paper, Orientation: &orientation, FitToWidth: &once,
-		FitToHeight: &many}))
+	s.keep(s.file.SetPageLayout(s.name, &excelize.PageLayoutOptions{Size: &paper, Orientation: &orientation,
+		FitToWidth: &once, FitToHeight: &many}))
 	s.keep(s.file.SetSheetProps(s.name, &excelize.SheetPropsOptions{FitToPage: &yes}))
 	side, end, edge := 0.5, 0.75, 0.35
-	s.keep(s.file.SetPageMargins(s.name, &excelize.PageLayoutMarginsOptions{Left: &side, Right: &side, Top: &end, Bottom: &end,
-		Header: &edge, Footer: &edge}))
+	s.keep(s.file.SetPageMargins(s.name, &excelize.PageLayoutMarginsOptions{Left: &side, Right: &side, Top: &end,
+		Bottom: &end, Header: &edge, Footer: &edge}))
 	study := &s.results.Plan.Resolved.Study
 	left := footText(study.ID + "   " + study.Title)
 	if study.Status == "draft" {
@@ -282,12 +252,8 @@ func (s *bookSheet) pageSetup(wide bool) {
 	s.keep(s.file.SetSheetView(s.name, 0, &excelize.ViewOptions{ShowGridLines: &no}))
 }
 
-// footText makes text fit for a head or foot, in which & begins a command; a head holds 255 characters in all.
-func footText(text string) string {
-	return strings.ReplaceAll(cutUnits(clean(text), 90), "&", "&&")
-}
-
-// freeze keeps the rows above the next one, and the first columns, in sight, and repeats those rows on every printed page.
+// freeze keeps the rows above the next one, and the first columns, in sight, and repeats those rows, from the row of
+// headings on, on every printed page.
 func (s *bookSheet) freeze(titleRow, columns int) {
 	top, err := excelize.CoordinatesToCellName(columns+1, s.row)
 	s.keep(err)
@@ -295,8 +261,8 @@ func (s *bookSheet) freeze(titleRow, columns int) {
 	if columns > 0 {
 		pane = "bottomRight"
 	}
-	s.keep(s.file.SetPanes(s.name, &excelize.Panes{Freeze: true, XSplit: columns, YSplit: s.row - 1, TopLeftCell: top, ActivePane: pane,
-		Selection: []excelize.Selection{{SQRef: top, ActiveCell: top, Pane: pane}}}))
+	s.keep(s.file.SetPanes(s.name, &excelize.Panes{Freeze: true, XSplit: columns, YSplit: s.row - 1, TopLeftCell: top,
+		ActivePane: pane, Selection: []excelize.Selection{{SQRef: top, ActiveCell: top, Pane: pane}}}))
 	s.repeat(titleRow, s.row-1)
 }
 
@@ -325,7 +291,8 @@ func (s *bookSheet) breakPage(row int) {
 	s.page = row
 }
 
-// together begins a new printed page before row first if otherwise the rows from there to the last one written might be torn.
+// together begins a new printed page before row first if otherwise the rows from there to the last one written might be
+// torn.
 func (s *bookSheet) together(first int) {
 	height := 0.0
 	for row := s.page; row < s.row; row++ {
@@ -339,7 +306,7 @@ func (s *bookSheet) together(first int) {
 // widen makes columns as wide as their numbers; a number that does not fit shows as ####.
 func (s *bookSheet) widen() {
 	for i, w := range s.widths {
-		if need := float64(s.letters[i+1]) + 3; need > w {
+		if need := min(float64(s.letters[i+1])+3, 100); need > w {
 			letter, err := excelize.ColumnNumberToName(i + 1)
 			s.keep(err)
 			s.keep(s.file.SetColWidth(s.name, letter, letter, need))
@@ -372,15 +339,6 @@ func (s *bookSheet) write(column int, text string, l look) {
 	s.keep(s.file.SetCellStyle(s.name, at, at, s.style(l)))
 }
 
-// fitted cuts a text that a cell cannot hold.
-func fitted(text string) string {
-	const note = " … (cut; the whole text is in the record and the plan)"
-	if cutUnits(text, cellLetters) == text {
-		return text
-	}
-	return cutUnits(text, cellLetters-len(note)) + note
-}
-
 // number writes a finite number with all its digits; the library's own setters keep only 15 of them.
 func (s *bookSheet) number(column int, v float64, l look) {
 	if math.IsNaN(v) || math.IsInf(v, 0) {
@@ -394,26 +352,6 @@ func (s *bookSheet) number(column int, v float64, l look) {
 	s.keep(s.file.SetCellDefault(s.name, at, strconv.FormatFloat(v, 'g', -1, 64)))
 	s.keep(s.file.SetCellStyle(s.name, at, at, s.style(l)))
 }
-
-// clean replaces what the file format cannot hold, and blanks that some viewers show as boxes.
-func clean(text string) string {
-	return strings.Map(func(r rune) rune {
-		switch {
-		case r == '\u00a0' || r == '\u202f':
-			return ' '
-		case r == '\t' || r == '\n':
-			return r
-		case r < ' ' || r == '\ufffe' || r == '\uffff':
-			return '\ufffd'
-		}
-		return r
-	}, strings.ReplaceAll(strings.ToValidUTF8(text, "\ufffd"), "\r\n", "\n"))
-}
-
-var escapeLike = regexp.MustCompile(`_(x[0-9A-Fa-f]{4}_)`)
-
-// escaped protects text that a reader of the format would take for an escaped character, such as _x0041_.
-func escaped(text string) string { return escapeLike.ReplaceAllString(text, "_x005F_$1") }
 
 // wide writes text that stands in columns first to last, which are merged.
 func (s *bookSheet) wide(first, last int, text string, l look) {
@@ -463,8 +401,8 @@ func (s *bookSheet) plot(column, row int, p plotted) {
 		Border:    excelize.LineOptions{Type: excelize.LineNone},
 		XAxis: excelize.ChartAxis{Minimum: &p.low, Maximum: &p.high, MajorUnit: p.step, Font: font,
 			NumFmt: excelize.ChartNumFmt{CustomNumFmt: p.format}, Title: title(p.axis)},
-		YAxis: excelize.ChartAxis{Minimum: &zero, Font: font, MajorGridLines: true, TickLabelPosition: excelize.ChartTickLabelLow,
-			NumFmt: excelize.ChartNumFmt{CustomNumFmt: "#,##0"}},
+		YAxis: excelize.ChartAxis{Minimum: &zero, Font: font, MajorGridLines: true,
+			TickLabelPosition: excelize.ChartTickLabelLow, NumFmt: excelize.ChartNumFmt{CustomNumFmt: "#,##0"}},
 	}
 	for _, l := range p.lines {
 		chart.Series = append(chart.Series, excelize.ChartSeries{Name: l.name, Categories: l.x, Values: l.y,
@@ -475,8 +413,8 @@ func (s *bookSheet) plot(column, row int, p plotted) {
 	s.keep(s.file.AddChart(s.name, s.cell(column, row), chart))
 }
 
-var lineDash = map[string]excelize.LineDashType{"": excelize.LineDashSolid, "dash": excelize.LineDashDash, "dot": excelize.LineDashSysDot,
-	"dash dot": excelize.LineDashLgDashDot}
+var lineDash = map[string]excelize.LineDashType{"": excelize.LineDashSolid, "dash": excelize.LineDashDash,
+	"dot": excelize.LineDashSysDot, "dash dot": excelize.LineDashLgDashDot}
 
 // A plotted figure has an axis from low to high with marks at each step.
 type plotted struct {

@@ -12,7 +12,8 @@ const decisionColumns = 7
 
 // decisionSheet is the first sheet: which study, what was asked, what came out, and the gravest doubts.
 func (b *book) decisionSheet() {
-	s := b.sheet("Decision", "the study, each criterion with its verdict, the gravest advisories", true, 15, 60, 17, 17, 21, 11, 16)
+	s := b.sheet("Decision", "the study, each criterion with its verdict, the gravest advisories", true,
+		15, 60, 17, 17, 21, 11, 16)
 	study, run := &b.results.Plan.Resolved.Study, &b.rec.Run
 	s.text(1, "LOTPROOF  RESULTS WORKBOOK", bookBrand)
 	s.row++
@@ -81,6 +82,13 @@ func (s *bookSheet) studyVerdict() {
 	s.row += 2
 }
 
+// mark writes a verdict or a severity with its shape into the first column.
+func (s *bookSheet) mark(word string) {
+	l := bookBody
+	l.bold, l.colour = true, verdictColour(word)
+	s.text(1, markOf(word)+" "+word, l)
+}
+
 func verdictColour(verdict string) string {
 	switch verdict {
 	case "not met", "stop":
@@ -103,10 +111,10 @@ func (s *bookSheet) decisions() {
 				heads = false
 			}
 			places := estimateDecimals(one)
-			s.text(1, markOf(a.Verdict)+" "+a.Verdict, look{bold: true, wrap: true, under: true, inset: true, middle: true, colour: verdictColour(a.Verdict)})
-			for c, item := range []bookItem{say(decisionSentence(s.results, one, a)), measured(one.Estimate, places, one.Unit, noFigure),
-				measured(a.Bound, places, one.Unit, noFigure), criterionItem(one, a), confidenceItem(a.Confidence),
-				say(orElse(a.Method, noFigure))} {
+			s.mark(a.Verdict)
+			for c, item := range []bookItem{say(decisionSentence(s.results, one, a)),
+				measured(one.Estimate, places, one.Unit, noFigure), measured(a.Bound, places, one.Unit, noFigure),
+				criterionItem(one, a), confidenceItem(a.Confidence), say(orElse(a.Method, noFigure))} {
 				s.put(2+c, item, bookBody)
 			}
 			s.row++
@@ -126,7 +134,8 @@ func criterionItem(one *record.Statistic, a *record.Accept) bookItem {
 		words = "at most "
 	}
 	plain := unitFormat(v, spec.Number{Text: a.Limit}.Decimals(), one.Unit)
-	return bookItem{number: &v, format: literal(words) + plain + ";" + literal(words+"−") + plain, letters: len([]rune(criterionText(one, a)))}
+	return bookItem{number: &v, format: literal(words) + plain + ";" + literal(words+"−") + plain,
+		letters: len([]rune(criterionText(one, a)))}
 }
 
 // mostGrave is how many advisories the first sheet lists.
@@ -152,7 +161,7 @@ func (s *bookSheet) gravest() {
 					s.heading("Advisories that weigh most")
 				}
 				listed++
-				s.text(1, markOf(severity)+" "+severity, look{bold: true, under: true, inset: true, middle: true, colour: verdictColour(severity)})
+				s.mark(severity)
 				s.wide(2, decisionColumns, fmt.Sprintf("%s: %s %s", one.Label, v.Text, v.Action), bookBody)
 				s.row++
 				s.together(first)
@@ -165,8 +174,8 @@ func (s *bookSheet) gravest() {
 	}
 	if listed == 0 {
 		s.heading("Advisories that weigh most")
-		s.wide(1, decisionColumns, "None is more than a note. That does not show that all is well; only what the catalogue lists is checked.",
-			bookText)
+		s.wide(1, decisionColumns, "None is more than a note. That does not show that all is well; only what the catalogue "+
+			"lists is checked.", bookText)
 		s.row++
 	}
 }

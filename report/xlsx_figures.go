@@ -12,11 +12,11 @@ import (
 func (b *book) estimateSheet() {
 	s := b.sheet("Estimates", "every statistic: estimate, standard error, bias, rows, units, resamples", true,
 		5, 16, 30, 11, 34, 16, 16, 16, 9, 9, 11, 12, 22)
-	s.title("Estimates", "Figures are shown with the digits that they support and stored with all their digits. Standard error: the standard "+
-		"deviation of the resample values. Bias: their mean less the estimate.", 13)
+	s.title("Estimates", "Figures are shown with the digits that they support and stored with all their digits. Standard "+
+		"error: the standard deviation of the resample values. Bias: their mean less the estimate.", 13)
 	at := s.row
-	s.heads(1, ">No.", "Statistic", "Label", "Role", "What is estimated", ">Estimate", ">Standard error", ">Bias", ">Rows used", ">Units",
-		">Resamples", ">Without a value", "Reason")
+	s.heads(1, ">No.", "Statistic", "Label", "Role", "What is estimated", ">Estimate", ">Standard error", ">Bias",
+		">Rows used", ">Units", ">Resamples", ">Without a value", "Reason")
 	s.freeze(at, 2)
 	for i := range b.results.Statistics {
 		one := &b.results.Statistics[i]
@@ -30,9 +30,9 @@ func (b *book) estimateSheet() {
 			}
 		}
 		s.line(1, count(i+1), say(one.ID), say(one.Label), say(one.Role), say(estimated(one)),
-			measured(one.Estimate, estimateDecimals(one), one.Unit, noFigure), measured(one.StandardError, spread, one.Unit, noFigure),
-			measured(one.Bias, bias, one.Unit, noFigure), count(one.N), count(one.Design.Units), count(one.Resamples),
-			count(one.FailedResamples), say(failureText(one)))
+			measured(one.Estimate, estimateDecimals(one), one.Unit, noFigure),
+			measured(one.StandardError, spread, one.Unit, noFigure), measured(one.Bias, bias, one.Unit, noFigure),
+			count(one.N), count(one.Design.Units), count(one.Resamples), count(one.FailedResamples), say(failureText(one)))
 	}
 	b.groupTable(s)
 }
@@ -118,11 +118,12 @@ func (b *book) unitOfGroups(one *record.Statistic) string {
 func (b *book) limitSheet() {
 	s := b.sheet("Limits", "every interval and bound, with Monte-Carlo error and companion", true,
 		5, 16, 16, 12, 10, 16, 16, 16, 16, 12, 28, 34)
-	s.title("Limits", "The Monte-Carlo error of a limit is the standard deviation that it would have over other seeds. A companion is an exact or "+
-		"classical interval shown beside those from resampling. Attained confidence: what an interval made of ranks really reaches.", 12)
+	s.title("Limits", "The Monte-Carlo error of a limit is the standard deviation that it would have over other seeds. A "+
+		"companion is an exact or classical interval shown beside those from resampling. Attained confidence: what an "+
+		"interval made of ranks really reaches.", 12)
 	at := s.row
-	s.heads(1, ">No.", "Statistic", "Interval", ">Confidence", "Bound", ">Lower limit", ">Monte-Carlo error", ">Upper limit",
-		">Monte-Carlo error", ">Attained confidence", "Use", "Intermediate figures")
+	s.heads(1, ">No.", "Statistic", "Interval", ">Confidence", "Bound", ">Lower limit", ">Monte-Carlo error",
+		">Upper limit", ">Monte-Carlo error", ">Attained confidence", "Use", "Intermediate figures")
 	s.freeze(at, 2)
 	for i := range b.results.Statistics {
 		one := &b.results.Statistics[i]
@@ -172,9 +173,10 @@ func figureList(values []record.Value) string {
 
 // advisorySheet lists every advisory, the gravest first.
 func (b *book) advisorySheet() {
-	s := b.sheet("Advisories", "every doubt about a result, with what to do and where the rule comes from", true, 12, 22, 34, 52, 42, 34, 44)
-	s.title("Advisories", "Stop: the interval carries no verdict. Caution: read the result with care. Note: worth knowing. That no advisory is "+
-		"given does not show that all is well; only what the catalogue lists is checked.", 7)
+	s := b.sheet("Advisories", "every doubt about a result, with what to do and where the rule comes from", true,
+		12, 22, 34, 52, 42, 34, 44)
+	s.title("Advisories", "Stop: the interval carries no verdict. Caution: read the result with care. Note: worth knowing. "+
+		"That no advisory is given does not show that all is well; only what the catalogue lists is checked.", 7)
 	at := s.row
 	s.heads(1, "Severity", "Advisory", "Statistic", "Finding", "What to do", "Evidence", "Source of the rule")
 	s.freeze(at, 0)

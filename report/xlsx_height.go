@@ -41,7 +41,8 @@ func (l look) points() float64 {
 	return l.size
 }
 
-// lineCount returns how many lines text takes in a width in points, broken between words, and within words that are too long.
+// lineCount returns how many lines text takes in a width in points, broken between words, and within words that are too
+// long.
 func lineCount(text string, l look, room float64) int {
 	lines := 0
 	blank := textWidth(" ", l)
@@ -67,7 +68,8 @@ func lineCount(text string, l look, room float64) int {
 	return lines
 }
 
-// room returns how wide text can be in columns first to last, in points. A unit of width is a digit of the standard font.
+// room returns how wide text can be in columns first to last, in points. A unit of width is a digit of the standard
+// font, a little less to be on the safe side.
 func (s *bookSheet) room(first, last int) float64 {
 	width := 0.0
 	for c := first; c <= last && c <= len(s.widths); c++ {

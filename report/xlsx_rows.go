@@ -20,8 +20,8 @@ func definitionOf(one *record.Statistic) *statistic.Definition {
 func (b *book) ledgerSheet() {
 	s := b.sheet("Row ledger", "rows read, used, excluded and missing, with the reason of each exclusion", true,
 		5, 20, 40, 46, 22, 10, 10, 10, 10, 10)
-	s.title("Row ledger", "For each statistic: read = used + excluded + missing + outside. Missing: a needed column has no value. Outside: "+
-		"the condition or the comparison of the statistic does not select the row.", 10)
+	s.title("Row ledger", "For each statistic: read = used + excluded + missing + outside. Missing: a needed column "+
+		"has no value. Outside: the condition or the comparison of the statistic does not select the row.", 10)
 	s.heads(1, ">No.", "Statistic", "Label", "Rows where", "Source", ">Read", ">Used", ">Excluded", ">Missing", ">Outside")
 	for i := range b.results.Statistics {
 		one := &b.results.Statistics[i]
@@ -46,7 +46,8 @@ func (b *book) ledgerSheet() {
 				heads = false
 			}
 			s.text(7, "", bookBody)
-			for c, item := range []bookItem{say(""), say(f.Name), sayCode(e.Where), say(e.Because), say(e.By), count(len(e.Lines))} {
+			for c, item := range []bookItem{say(""), say(f.Name), sayCode(e.Where), say(e.Because), say(e.By),
+				count(len(e.Lines))} {
 				s.put(1+c, item, bookBody)
 			}
 			s.wide(7, 10, lineList(e.Lines), bookBody)
@@ -71,32 +72,37 @@ func lineList(lines []int) string {
 	return text[:cut] + ", and more: see the sheet of rows"
 }
 
-// mostCells is how many cells of rows a workbook holds at most. A cell costs about 200 bytes of memory while the file is made.
-const mostCells = 4_000_000
+// mostCells is how many cells of rows a workbook holds at most, over all sources: a cell costs about 700 bytes of
+// memory while the file is made, and as many are more than anyone looks at.
+const mostCells = 1_500_000
 
 // rowSheets lists the rows of each source as analysed: every value that entered, and what became of every row.
 func (b *book) rowSheets() {
-	for i := range b.data.Tables {
-		b.rowSheet(&b.results.Sources[i], b.data.Tables[i], mostCells)
+	left := mostCells
+	for i, t := range b.data.Tables {
+		left -= b.rowSheet(&b.results.Sources[i], t, left)
 	}
 }
 
 // rowColumns are the columns before those of the file.
 const rowColumns = 4
 
-func (b *book) rowSheet(f *record.Source, t *source.Table, most int) {
+// rowSheet lists the rows of a source on at most so many cells and returns how many it took.
+func (b *book) rowSheet(f *record.Source, t *source.Table, most int) int {
 	widths := []float64{9, 14, 34, 18}
 	for i := range t.Columns {
 		widths = append(widths, columnWidth(&t.Columns[i]))
 	}
-	s := b.sheet("Rows "+f.Name, "the data of source "+f.Name+" as analysed, and what became of each row", len(widths) > 8, widths...)
+	s := b.sheet("Rows "+f.Name, "the data of source "+f.Name+" as analysed, and what became of each row",
+		len(widths) > 8, widths...)
 	last := min(len(widths), 8)
-	about := fmt.Sprintf("File %s, SHA-256 %s. Used by: the numbers that the statistics have on the sheet Estimates. Numbers are the values that "+
-		"entered the analysis; a cell without a value is shown as it is written, in grey.", f.File, short(f.SHA256))
+	about := fmt.Sprintf("File %s, SHA-256 %s. Used by: the numbers that the statistics have on the sheet Estimates. "+
+		"Numbers are the values that entered the analysis; a cell without a value is shown as it is written, in grey.",
+		f.File, short(f.SHA256))
 	listed := min(len(t.Rows), sheetRows-8, most/len(widths))
 	if listed < len(t.Rows) {
-		about += fmt.Sprintf(" Only the first %s of %s rows are listed, because a workbook cannot hold more; the analysis used them all.",
-			grouped(int64(listed)), grouped(int64(len(t.Rows))))
+		about += fmt.Sprintf(" Only the first %s of %s rows are listed, because a workbook cannot hold more; the analysis "+
+			"used them all.", grouped(int64(listed)), grouped(int64(len(t.Rows))))
 	}
 	s.title("Rows of "+f.Name, about, last)
 	at := s.row
@@ -143,9 +149,10 @@ func (b *book) rowSheet(f *record.Source, t *source.Table, most int) {
 		}
 		s.row++
 		if s.err != nil {
-			return
+			break
 		}
 	}
+	return listed * len(widths)
 }
 
 // value writes the cell of a column as it was analysed.
@@ -167,14 +174,6 @@ func (s *bookSheet) value(at int, c *source.Column, row int, l look) {
 		s.letters[at] = max(s.letters[at], len([]rune(fixedText(c.Numbers[row], decimals))))
 	}
 	s.number(at, c.Numbers[row], l)
-}
-
-// firstPiece is what a cell holds of a text; a cell of a table is cut rather than continued, so that one row stays one row.
-func firstPiece(text string) string {
-	if pieces := cellPieces(text); len(pieces) > 1 {
-		return cutUnits(text, cellLetters-1) + "…"
-	}
-	return text
 }
 
 // columnWidth looks at the first rows of a column.

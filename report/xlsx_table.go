@@ -41,12 +41,14 @@ func count(n int) bookItem {
 	return bookItem{number: &v, format: "#,##0", letters: len([]rune(grouped(int64(n))))}
 }
 
-// measured is a figure with its unit, shown with a number of decimals and stored with all digits; nil says what otherwise says.
+// measured is a figure with its unit, shown with a number of decimals and stored with all digits; nil says what
+// otherwise says.
 func measured(v *float64, decimals int, unit, otherwise string) bookItem {
 	if v == nil {
 		return bookItem{text: otherwise, soft: true, right: true}
 	}
-	return bookItem{number: v, format: unitFormat(*v, decimals, unit), letters: len([]rune(withUnit(fixedText(*v, decimals), unit)))}
+	return bookItem{number: v, format: unitFormat(*v, decimals, unit),
+		letters: len([]rune(withUnit(fixedText(*v, decimals), unit)))}
 }
 
 // percentage is a share from 0 to 1 shown in percent.
@@ -139,18 +141,6 @@ func (s *bookSheet) line(first int, items ...bookItem) {
 	s.row++
 	if more {
 		s.line(first, rest...)
-	}
-}
-
-// cellPieces cuts text into pieces that a cell can hold.
-func cellPieces(text string) []string {
-	var out []string
-	for {
-		piece := cutUnits(text, cellLetters)
-		out = append(out, piece)
-		if text = text[len(piece):]; text == "" {
-			return out
-		}
 	}
 }
 

@@ -8,7 +8,8 @@ import (
 // methodSheet explains what was used, and only that, with numbered references.
 func (b *book) methodSheet() {
 	s := b.sheet("Methods", "statistics, intervals and resampling in words and formulas, with references", false, 24, 104)
-	s.title("Methods", "Only what this study used is described. Numbers in square brackets lead to the references below.", 2)
+	s.title("Methods", "Only what this study used is described. Numbers in square brackets lead to the references below.",
+		2)
 	numbers := map[string]string{}
 	all := references(b.results)
 	for i, r := range all {
@@ -99,7 +100,8 @@ func (b *book) planSheet() {
 
 // provenanceSheet holds all that ties the results to plan, data and program.
 func (b *book) provenanceSheet() {
-	s := b.sheet("Provenance", "digests, versions, seed, generator, run, amendments, and how to run it again", false, 30, 16, 40, 40, 14)
+	s := b.sheet("Provenance", "digests, versions, seed, generator, run, amendments, and how to run it again", false,
+		30, 16, 40, 40, 14)
 	s.title("Provenance", "", 5)
 	run, r := b.rec.Run, b.results
 	pairs := func(rows [][2]string) {
@@ -125,10 +127,12 @@ func (b *book) provenanceSheet() {
 	s.heading("Sources")
 	for i := range r.Sources {
 		f := &r.Sources[i]
-		pairs([][2]string{{f.Name, f.File + ", " + grouped(f.Bytes) + " bytes, digest in the plan: " + f.Approved}, {"", f.SHA256}})
+		pairs([][2]string{{f.Name, f.File + ", " + grouped(f.Bytes) + " bytes, digest in the plan: " + f.Approved},
+			{"", f.SHA256}})
 	}
 	s.heading("Resampling designs")
-	s.wide(1, 5, "A design says which rows are drawn together. Its digest and the seed address the random streams.", bookQuiet)
+	s.wide(1, 5, "A design says which rows are drawn together. Its digest and the seed address the random streams.",
+		bookQuiet)
 	s.row++
 	var order []string
 	users := map[string][]string{}

@@ -198,7 +198,8 @@ type bookSheet struct {
 	heights map[int]float64 // of the rows that are not of standard height, in points
 	letters map[int]int     // of the longest number in a column, as shown
 	page    int             // row at the top of the current printed page
-	paper   float64         // height of a printed page, in points of the sheet
+
+	across, down float64 // what a printed page has room for, in points
 }
 
 // sheet adds a sheet. wide is landscape; widths are those of the columns, in digits of the standard font.
@@ -224,16 +225,11 @@ func (b *book) sheet(name, about string, wide bool, widths ...float64) *bookShee
 // pageSetup sets paper, margins, head and foot.
 func (s *bookSheet) pageSetup(wide bool) {
 	paper, orientation, once, many, yes, no := 9, "portrait", 1, 0, true, false
-	across, down := 523.0, 734.0 // A4 less margins, in points
+	s.across, s.down = 523, 734 // A4 less margins
 	if wide {
 		orientation = "landscape"
-		across, down = 770.0, 487.0
+		s.across, s.down = 770, 487
 	}
-	width := 0.0
-	for _, w := range s.widths {
-		width += 6*w + 4
-	}
-	s.paper = 0.96 * down * max(1, width/across)
 	s.keep(s.file.SetPageLayout(s.name, &excelize.PageLayoutOptions{Size: &paper, Orientation: &orientation,
 		FitToWidth: &once, FitToHeight: &many}))
 	s.keep(s.file.SetSheetProps(s.name, &excelize.SheetPropsOptions{FitToPage: &yes}))
@@ -298,15 +294,25 @@ func (s *bookSheet) together(first int) {
 	for row := s.page; row < s.row; row++ {
 		height += max(s.heights[row], 15)
 	}
-	if height > s.paper && first > s.page {
+	width := 0.0
+	for i := range s.widths {
+		width += 6*s.width(i+1) + 4
+	}
+	// The sheet is made smaller until its width fits; a little is left for viewers that measure otherwise.
+	if height > 0.96*s.down*max(1, width/s.across) && first > s.page {
 		s.breakPage(first)
 	}
 }
 
-// widen makes columns as wide as their numbers; a number that does not fit shows as ####.
+// width is how wide a column will be: a number that does not fit shows as ####.
+func (s *bookSheet) width(column int) float64 {
+	return max(s.widths[column-1], min(float64(s.letters[column])+3, 100))
+}
+
+// widen makes columns as wide as their numbers.
 func (s *bookSheet) widen() {
 	for i, w := range s.widths {
-		if need := min(float64(s.letters[i+1])+3, 100); need > w {
+		if need := s.width(i + 1); need > w {
 			letter, err := excelize.ColumnNumberToName(i + 1)
 			s.keep(err)
 			s.keep(s.file.SetColWidth(s.name, letter, letter, need))

@@ -13,7 +13,7 @@ const decisionColumns = 7
 // decisionSheet is the first sheet: which study, what was asked, what came out, and the gravest doubts.
 func (b *book) decisionSheet() {
 	s := b.sheet("Decision", "the study, each criterion with its verdict, the gravest advisories", true,
-		15, 60, 17, 17, 21, 11, 16)
+		15, 68, 16, 16, 21, 12, 16)
 	study, run := &b.results.Plan.Resolved.Study, &b.rec.Run
 	s.text(1, "LOTPROOF  RESULTS WORKBOOK", bookBrand)
 	s.row++

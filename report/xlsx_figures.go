@@ -175,8 +175,8 @@ func figureList(values []record.Value) string {
 func (b *book) advisorySheet() {
 	s := b.sheet("Advisories", "every doubt about a result, with what to do and where the rule comes from", true,
 		12, 22, 34, 52, 42, 34, 44)
-	s.title("Advisories", "Stop: the interval carries no verdict. Caution: read the result with care. Note: worth knowing. "+
-		"That no advisory is given does not show that all is well; only what the catalogue lists is checked.", 7)
+	s.title("Advisories", "Stop: the interval carries no verdict. Caution: read the result with care. Note: worth "+
+		"knowing. That no advisory is given does not show that all is well; only what the catalogue lists is checked.", 7)
 	at := s.row
 	s.heads(1, "Severity", "Advisory", "Statistic", "Finding", "What to do", "Evidence", "Source of the rule")
 	s.freeze(at, 0)

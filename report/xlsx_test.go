@@ -225,8 +225,8 @@ func TestControlCharactersAreReplaced(t *testing.T) {
 	}
 }
 
-// At most 31 characters, certain signs forbidden, no apostrophes at the ends, no difference of case, "History" reserved: the
-// rules of the viewers (common practice, no single source).
+// At most 31 characters, certain signs forbidden, no apostrophes at the ends, no difference of case, "History"
+// reserved: the rules of the viewers (common practice, no single source).
 func TestSheetNames(t *testing.T) {
 	rec, data := fixture()
 	b, err := newBook(rec, data)
@@ -287,6 +287,18 @@ func TestLongTextGoesOn(t *testing.T) {
 	must(t, err)
 	if !strings.HasSuffix(got, "…") || !strings.HasPrefix(long, strings.TrimSuffix(got, "…")) {
 		t.Error("a long text of a row is not cut with a mark")
+	}
+}
+
+func TestTextBeyondACellSaysSo(t *testing.T) {
+	rec, data := fixture()
+	rec.Results.Plan.Resolved.Study.Purpose = strings.Repeat("_x0041_ ", 5000)
+	f := openWorkbook(t, workbook(t, rec, data))
+	got, err := f.GetCellValue("Decision", "B5")
+	must(t, err)
+	const note = "(cut; the whole text is in the record and the plan)"
+	if !strings.HasPrefix(got, "_x0041_ _x0041_ ") || !strings.HasSuffix(got, note) {
+		t.Errorf("the purpose begins %q and ends %q", got[:20], got[len(got)-60:])
 	}
 }
 

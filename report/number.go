@@ -308,6 +308,9 @@ func errorFigure(e *float64) string {
 	if e == nil {
 		return notAsked
 	}
+	if *e == 0 {
+		return "0"
+	}
 	return fixedText(*e, decimalsFor(*e, 2))
 }
 

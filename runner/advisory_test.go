@@ -70,7 +70,8 @@ func TestEachAdvisoryFires(t *testing.T) {
 		{"few units", "caution", "statistic: median, of: x, interval: bca", plain(9), []string{"coarse steps"}},
 		{"few units", "stop", "statistic: mean, of: x, interval: studentized", plain(4),
 			[]string{"resamples without spread", "coarse steps"}},
-		{"quantile out of reach", "stop", "statistic: quantile, with: {p: 0.1}, of: x, bound: lower, interval: order statistic",
+		{"quantile out of reach", "stop", "statistic: quantile, with: {p: 0.1}, of: x, bound: lower, interval: " +
+			"order statistic",
 			plain(28), nil},
 		{"pseudo-replication", "stop", "statistic: mean, of: x, interval: studentized",
 			table(60, func(i int) (string, string, float64, float64) {
@@ -81,8 +82,10 @@ func TestEachAdvisoryFires(t *testing.T) {
 			table(60, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i/30), "a", spaced(60)[i] + float64(i/30), 0
 			}), nil},
-		{"spread from few units", "stop", "statistic: standard deviation, of: x, bound: upper, interval: percentile", plain(14), nil},
-		{"spread from few units", "caution", "statistic: standard deviation, of: x, bound: upper, interval: studentized", plain(100), nil},
+		{"spread from few units", "stop", "statistic: standard deviation, of: x, bound: upper, interval: " +
+			"percentile", plain(14), nil},
+		{"spread from few units", "caution", "statistic: standard deviation, of: x, bound: upper, interval: " +
+			"studentized", plain(100), nil},
 		{"skewed mean", "caution", "statistic: mean, of: x, interval: studentized",
 			table(40, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i), "a", math.Exp(0.8 * (spaced(40)[i] - 10)), 0
@@ -117,12 +120,14 @@ func TestEachAdvisoryFires(t *testing.T) {
 			table(12, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i), "a", spaced(12)[i], spaced(12)[i] + 0.2*spaced(12)[(i+5)%12]
 			}), nil},
-		{"partly paired", "caution", "statistic: mean, of: x, interval: studentized, compare: {by: h, of: [a, b], as: difference}, " +
+		{"partly paired", "caution", "statistic: mean, of: x, interval: studentized, compare: {by: h, of: [a, b], " +
+			"as: difference}, " +
 			"resampling: {unit: g}",
 			table(60, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i%35), []string{"a", "b"}[i/35], spaced(60)[i], 0
 			}), nil},
-		{"seed could decide", "caution", "statistic: mean, of: x, bound: lower, interval: studentized, accept: {lower_at_least: 9.849}",
+		{"seed could decide", "caution", "statistic: mean, of: x, bound: lower, interval: studentized, accept: " +
+			"{lower_at_least: 9.849}",
 			plain(60), nil},
 	}
 	fired := map[string]bool{}

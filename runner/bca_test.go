@@ -36,7 +36,8 @@ func checkBCa(t *testing.T, c reference.Case, r *record.Statistic, resamples int
 				low, high = c.Range(t, name, want, resamples)
 			}
 			if strict[name] < low || strict[name] > high {
-				t.Errorf("%s: the exact law gives %s = %v with ties uncounted, the case has %v", c.ID, name, strict[name], want)
+				t.Errorf("%s: the exact law gives %s = %v with ties uncounted, the case has "+
+					"%v", c.ID, name, strict[name], want)
 			}
 			wanted[name] = want + half[name] - strict[name]
 		}

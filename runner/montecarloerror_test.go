@@ -52,7 +52,8 @@ func TestMonteCarloError(t *testing.T) {
 				t.Logf("%s, %s %s: SD over seeds %s, given %s, ratio %.3f", s.statistic, name, end,
 					strconv.FormatFloat(sd, 'g', 4, 64), strconv.FormatFloat(given, 'g', 4, 64), given/sd)
 				if math.Abs(given/sd-1) > 0.15 {
-					t.Errorf("%s, %s %s: SD over seeds %g, mean of the errors given %g", s.statistic, name, end, sd, given)
+					t.Errorf("%s, %s %s: SD over seeds %g, mean of the errors given "+
+						"%g", s.statistic, name, end, sd, given)
 				}
 			}
 		}

@@ -136,7 +136,8 @@ func prepare(plan *spec.Plan, i int, selection *source.Selection) (*analysis, *s
 	}
 	design, err := draw.New(layout)
 	if err != nil {
-		return mistake(".resampling", err.Error(), "a drawn unit must lie in one stratum: take the stratifying column out, "+
+		return mistake(".resampling", err.Error(), "a drawn unit must lie in one stratum: take the stratifying "+
+			"column out, "+
 			"or nest the units, outer column first")
 	}
 	a.design = design

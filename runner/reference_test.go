@@ -41,20 +41,24 @@ var setups = map[string]setup{
 		"[percentile, basic, bca]"},
 	"darwin-mean": {"darwin.csv", "diff: {type: number}", "", "", "statistic: mean, of: diff", allMethods},
 	"rivers-mean": {"rivers.csv", "miles: {type: number}", "", "", "statistic: mean, of: miles", allMethods},
-	"precip-mean": {"precip.csv", "in_per_year: {type: number}", "", "", "statistic: mean, of: in_per_year", allMethods},
-	"precip-mc":   {"precip.csv", "in_per_year: {type: number}", "", "", "statistic: mean, of: in_per_year", allMethods},
+	"precip-mean": {"precip.csv", "in_per_year: {type: number}", "", "", "statistic: mean, of: " +
+		"in_per_year", allMethods},
+	"precip-mc": {"precip.csv", "in_per_year: {type: number}", "", "", "statistic: mean, of: " +
+		"in_per_year", allMethods},
 	"law-cor": {"law.csv", "LSAT: {type: number}, GPA: {type: number}", "", "",
 		"statistic: Pearson correlation, of: [LSAT, GPA]", "[percentile, basic, bca]"},
 	"cars-cor-mc": {"cars.csv", "speed: {type: number}, dist: {type: number}", "", "",
 		"statistic: Pearson correlation, of: [speed, dist]", "[percentile, basic, normal, bca]"},
-	"galaxies-sd-mc": {"galaxies.csv", "velocity: {type: number}", "", "", "statistic: standard deviation, of: velocity",
+	"galaxies-sd-mc": {"galaxies.csv", "velocity: {type: number}", "", "", "statistic: standard deviation, of: " +
+		"velocity",
 		"[percentile, basic, normal, bca]"},
 	"chickwts-trim20-mc95": {"chickwts.csv", "weight: {type: number}", "", "",
 		"statistic: trimmed mean, of: weight, with: {trim: 0.2}", "percentile"},
 	"rail-cluster": {"rail.csv", "rail: {type: category}, travel: {type: number}", "", "rail",
 		"statistic: mean, of: travel",
 		"[percentile, basic]"},
-	"pixel-cluster": {"pixel.csv", "dog: {type: category}, pixel: {type: number}", "", "dog", "statistic: mean, of: pixel",
+	"pixel-cluster": {"pixel.csv", "dog: {type: category}, pixel: {type: " +
+		"number}", "", "dog", "statistic: mean, of: pixel",
 		"[percentile, basic, normal]"},
 	"toothgrowth-strat": {"toothgrowth.csv", "supp: {type: category}, len: {type: number}", "", "",
 		"statistic: mean, of: len, compare: {by: supp, of: [OJ, VC], as: difference}", "[percentile, basic]"},
@@ -64,10 +68,11 @@ var setups = map[string]setup{
 		`where: 'group == "treatment"', statistic: median, of: days`, "percentile"},
 	"mouse-control-median": {"mouse.csv", "group: {type: category}, days: {type: number}", "", "",
 		`where: 'group == "control"', statistic: median, of: days`, "percentile"},
-	"bod-median":       {"bod.csv", "demand: {type: number}", "", "", "statistic: median, of: demand", "percentile"},
-	"aircondit-median": {"aircondit.csv", "hours: {type: number}", "", "", "statistic: median, of: hours", "percentile"},
-	"rivers-median":    {"rivers.csv", "miles: {type: number}", "", "", "statistic: median, of: miles", "percentile"},
-	"chem-median":      {"chem.csv", "copper: {type: number}", "", "", "statistic: median, of: copper", "percentile"},
+	"bod-median": {"bod.csv", "demand: {type: number}", "", "", "statistic: median, of: demand", "percentile"},
+	"aircondit-median": {"aircondit.csv", "hours: {type: number}", "", "", "statistic: median, of: " +
+		"hours", "percentile"},
+	"rivers-median": {"rivers.csv", "miles: {type: number}", "", "", "statistic: median, of: miles", "percentile"},
+	"chem-median":   {"chem.csv", "copper: {type: number}", "", "", "statistic: median, of: copper", "percentile"},
 }
 
 // prepared reads the plan of a setup and prepares it.

@@ -34,7 +34,8 @@ func TestStandardErrorOfEstimate(t *testing.T) {
 	}{
 		{"mean, s/√n", mouse, "", treatment},
 		{"difference of groups of 7 and 9",
-			with("statistic: mean, of: days, compare: {by: group, of: [treatment, control], as: difference}"), "", difference},
+			with("statistic: mean, of: days, compare: {by: group, of: [treatment, control], as: " +
+				"difference}"), "", difference},
 		{"mean over two strata", with("statistic: mean, of: days"), "row, strata: group", stratified},
 		// Six clusters of three: the bootstrap standard error has divisor 6, this one 5.
 		{"mean of whole clusters", rail, "rail", number("rail-cluster-boot-se", "se") * math.Sqrt(6.0/5)},

@@ -113,7 +113,8 @@ func TestJudge(t *testing.T) {
 	for i, tt := range tests {
 		verdict, compared := judge(tt.criterion, num(t, tt.limit), tt.bound, tt.estimate, tt.rule)
 		if verdict != tt.verdict || compared != tt.compared {
-			t.Errorf("row %d: %s %s, bound %v, estimate %v, %s %s: %s with %s, want %s with %s", i, tt.criterion, tt.limit,
+			t.Errorf("row %d: %s %s, bound %v, estimate %v, %s %s: %s with %s, want %s with "+
+				"%s", i, tt.criterion, tt.limit,
 				tt.bound, tt.estimate, tt.rule.Rule, tt.rule.Ties, verdict, compared, tt.verdict, tt.compared)
 		}
 	}
@@ -143,16 +144,21 @@ func TestDecide(t *testing.T) {
 		verdict    string
 		why        string
 	}{
-		{"plain", "shown", []record.Interval{good, other}, nil, "bca", Met, "the bound is on the right side of the criterion"},
-		{"caution decides all the same", "shown", []record.Interval{good}, caution, "bca", Met, "the bound is on the right side of the criterion"},
+		{"plain", "shown", []record.Interval{good, other}, nil, "bca", Met, "the bound is on the right side of the " +
+			"criterion"},
+		{"caution decides all the " +
+			"same", "shown", []record.Interval{good}, caution, "bca", Met, "the bound is on the right side of the " +
+			"criterion"},
 		{"stopped", "shown", []record.Interval{good, other}, stop, "", NotShown, "stopped by few units"},
 		{"stopped, companion decides", "decides", []record.Interval{good, other}, stop, "order statistic", Met,
-			"the bound is on the right side of the criterion; decided by the companion, as the plan says: stopped by few units"},
+			"the bound is on the right side of the criterion; decided by the companion, as the plan says: stopped " +
+				"by few units"},
 		{"rows that are not independent", "decides", []record.Interval{good, other},
 			[]record.Advisory{{Code: "pseudo-replication", Severity: "stop"}}, "", NotShown, "stopped by pseudo-replication"},
 		{"no limit", "shown", []record.Interval{none, other}, nil, "", NotShown, "no bca limit: of a reason"},
 		{"no limit, companion decides", "decides", []record.Interval{none, other}, nil, "order statistic", Met,
-			"the bound is on the right side of the criterion; decided by the companion, as the plan says: no bca limit: of a reason"},
+			"the bound is on the right side of the criterion; decided by the companion, as the plan says: no bca " +
+				"limit: of a reason"},
 		{"neither", "decides", []record.Interval{none, otherNone}, nil, "", NotShown,
 			"no bca limit: of a reason; no order statistic limit: another"},
 	}

@@ -23,11 +23,14 @@ func main() {
 // run carries out one command and returns the exit status; the statuses are listed once, in exit.go.
 func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 	root := &cobra.Command{
-		Use:   "lotproof",
-		Short: "Carry out a study plan: estimates, confidence limits by resampling, verdicts, and a record that replays",
-		Long: "Lotproof carries out a study plan written in YAML: it estimates, finds confidence limits by resampling, judges\n" +
+		Use: "lotproof",
+		Short: "Carry out a study plan: estimates, confidence limits by resampling, verdicts, and a record that " +
+			"replays",
+		Long: "Lotproof carries out a study plan written in YAML: it estimates, finds confidence limits by " +
+			"resampling, judges\n" +
 			"acceptance criteria, and writes a workbook, a method appendix and a run record that can be replayed.\n\n" +
-			"Exit status: 0 done, every criterion met or none set; 1 done, a criterion is not met or not shown; 2 the plan, the\n" +
+			"Exit status: 0 done, every criterion met or none set; 1 done, a criterion is not met or not shown; 2 " +
+			"the plan, the\n" +
 			"data or the command line is wrong; 3 the program or the machine failed; 4 a replay differs.",
 		SilenceUsage:  true,
 		SilenceErrors: true,

@@ -28,12 +28,15 @@ func replayCommand() *cobra.Command {
 	c := &cobra.Command{
 		Use:   "replay RECORD",
 		Short: "Run a record again and say whether every figure and every file agrees",
-		Long: "Replay runs the plan that a record holds on the data that it names, and compares every figure to the last bit and\n" +
+		Long: "Replay runs the plan that a record holds on the data that it names, and compares every figure to " +
+			"the last bit and\n" +
 			"the files of the run folder to the last byte. RECORD is record.json or the folder that holds it.",
 		Args: one("record"),
 	}
-	c.Flags().StringVar(&data, "data", "", "folder of the data files (default: three folders above the record, where the plan was)")
-	c.Flags().IntVar(&workers, "workers", 0, "how many resamples are drawn at once; no influence on results (default: one a processor)")
+	c.Flags().StringVar(&data, "data", "", "folder of the data files (default: three folders above the record, "+
+		"where the plan was)")
+	c.Flags().IntVar(&workers, "workers", 0, "how many resamples are drawn at once; no influence on results "+
+		"(default: one a processor)")
 	c.RunE = func(c *cobra.Command, args []string) error {
 		r := &replay{out: c.OutOrStdout()}
 		if err := r.read(args[0], data); err != nil {
@@ -210,7 +213,8 @@ func (r *replay) files(results *record.Results, study *runner.Study) error {
 		default:
 			r.differ("%s: the file is not what the results give", f.name)
 			if r.record.Run.Go != runtime.Version() {
-				r.remark("it was written by a program built with %s, this one with %s; compressed files may differ for that alone",
+				r.remark("it was written by a program built with %s, this one with %s; compressed files may differ "+
+					"for that alone",
 					r.record.Run.Go, runtime.Version())
 			}
 		}

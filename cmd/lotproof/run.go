@@ -28,7 +28,8 @@ func runCommand(verdict *bool) *cobra.Command {
 		Args:  one("plan"),
 	}
 	c.Flags().StringVar(&out, "out", "", "folder that holds the runs of all studies (default: runs beside the plan)")
-	c.Flags().IntVar(&workers, "workers", 0, "how many resamples are drawn at once; no influence on results (default: one a processor)")
+	c.Flags().IntVar(&workers, "workers", 0, "how many resamples are drawn at once; no influence on results "+
+		"(default: one a processor)")
 	c.Flags().BoolVar(&asJSON, "json", false, "print the run record instead of the table")
 	c.RunE = func(c *cobra.Command, args []string) error {
 		started := time.Now()

@@ -14,13 +14,18 @@ func parse(text string) (float64, error) { return strconv.ParseFloat(text, 64) }
 
 var pseudoReplication = Definition{
 	Code: "pseudo-replication",
-	Summary: "Rows that belong together are drawn as if they were independent: for every category or text column that groups whole resampling " +
-		"units and is neither a stratum nor part of the comparison, the intraclass correlation of what the units contribute to the statistic: " +
-		"their influence values, or the observations where a quantile has none. Above 0.05 with a design effect above 1.2 and P < 0.025 in the " +
-		"analysis of variance it is a stop with 5 groups or more, a caution with fewer. Not checked for a Spearman correlation.",
+	Summary: "Rows that belong together are drawn as if they were independent: for every category or text column " +
+		"that groups whole resampling " +
+		"units and is neither a stratum nor part of the comparison, the intraclass correlation of what the units " +
+		"contribute to the statistic: " +
+		"their influence values, or the observations where a quantile has none. Above 0.05 with a design effect " +
+		"above 1.2 and P < 0.025 in the " +
+		"analysis of variance it is a stop with 5 groups or more, a caution with fewer. Not checked for a Spearman " +
+		"correlation.",
 	Action: "Name the group as the resampling unit, or draw within its levels as strata if they are all there is.",
-	Source: "Design effect 1 + (m−1)·ICC: Kish L. Survey Sampling. Wiley 1965, section 5.4 (cited from memory); thresholds of this program",
-	Every:  true,
+	Source: "Design effect 1 + (m−1)·ICC: Kish L. Survey Sampling. Wiley 1965, section 5.4 (cited from memory); " +
+		"thresholds of this program",
+	Every: true,
 	check: func(in *Input) *finding {
 		if in.Contribution == nil {
 			return nil
@@ -128,11 +133,13 @@ func (in *Input) clustered(name string, texts []string) *finding {
 	}
 	f := &finding{severity: Stop, evidence: []record.Value{value("intraclass correlation", icc), value("design effect", effect),
 		value("groups", k), value("effective units", all/effect), value("P", p)},
-		text: fmt.Sprintf("%s inside %q resemble each other (intraclass correlation %.2f) but are drawn as independent. The effective number is about %.0f, not %.0f.",
+		text: fmt.Sprintf("%s inside %q resemble each other (intraclass correlation %.2f) but are drawn as "+
+			"independent. The effective number is about %.0f, not %.0f.",
 			what, name, icc, all/effect, all)}
 	if k < 5 {
 		f.severity = Caution
-		f.text = fmt.Sprintf("The levels of %q differ more than what lies within them (intraclass correlation %.2f); the draw takes no account of it.", name, icc)
+		f.text = fmt.Sprintf("The levels of %q differ more than what lies within them (intraclass correlation "+
+			"%.2f); the draw takes no account of it.", name, icc)
 	}
 	return f
 }

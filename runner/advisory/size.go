@@ -13,17 +13,20 @@ import (
 
 var fewUnits = Definition{
 	Code: "few units",
-	Summary: "An interval from resampling with fewer than 10 outermost resampling units (caution) or fewer than 5 (stop); " +
+	Summary: "An interval from resampling with fewer than 10 outermost resampling units (caution) or fewer than 5 " +
+		"(stop); " +
 		"in a comparison the smaller group counts.",
 	Action: "Let an exact or classical companion decide, or take more units.",
-	Source: "With n units there are only C(2n−1, n) different resamples, 126 for n = 5 (arithmetic); thresholds of this program",
+	Source: "With n units there are only C(2n−1, n) different resamples, 126 for n = 5 (arithmetic); thresholds of " +
+		"this program",
 	check: func(in *Input) *finding {
 		n := in.units()
 		if !in.resampled() || n >= 10 {
 			return nil
 		}
 		f := &finding{severity: Caution, evidence: []record.Value{value("units", float64(n))},
-			text: fmt.Sprintf("Only %d resampling units. An interval from resampling is not trustworthy at this size.", n)}
+			text: fmt.Sprintf("Only %d resampling units. An interval from resampling is not trustworthy at this "+
+				"size.", n)}
 		if n < 5 {
 			f.severity = Stop
 		}
@@ -33,10 +36,12 @@ var fewUnits = Definition{
 
 var quantileOutOfReach = Definition{
 	Code: "quantile out of reach",
-	Summary: "The bound of a quantile lies further out than the data reach: the chance that the extreme observation lies beyond " +
+	Summary: "The bound of a quantile lies further out than the data reach: the chance that the extreme " +
+		"observation lies beyond " +
 		"the quantile is smaller than the confidence (stop).",
 	Action: "State the attained confidence, take more units, or ask for a less extreme quantile.",
-	Source: "The chance is 1 − (1−p)ⁿ for a lower and 1 − pⁿ for an upper bound (arithmetic; Wilks SS, Annals of Mathematical Statistics 12 (1941) 91–96)",
+	Source: "The chance is 1 − (1−p)ⁿ for a lower and 1 − pⁿ for an upper bound (arithmetic; Wilks SS, Annals of " +
+		"Mathematical Statistics 12 (1941) 91–96)",
 	check: func(in *Input) *finding {
 		if in.Plan.Compare != nil || !slices.Contains([]string{"quantile", "median"}, in.Plan.Name) {
 			return nil
@@ -71,7 +76,8 @@ var quantileOutOfReach = Definition{
 		needed := math.Ceil(numeric.Log1p(-level)/rate - 1e-9)
 		return &finding{severity: Stop, evidence: []record.Value{value("units", n), value("attainable confidence", worst),
 			value("units needed", needed)},
-			text: fmt.Sprintf("With %.0f units no %s bound of this quantile reaches %s without assuming a distribution. The most "+
+			text: fmt.Sprintf("With %.0f units no %s bound of this quantile reaches %s without assuming a "+
+				"distribution. The most "+
 				"that can be attained is %s; %.0f units are needed.", n, side, percent(level), percent(worst), needed)}
 	},
 }
@@ -82,21 +88,26 @@ var spreads = []string{"standard deviation", "variance", "coefficient of variati
 
 var spreadFromFewUnits = Definition{
 	Code: "spread from few units",
-	Summary: "A measure of spread from fewer than 60 units (caution), or from fewer than 15 by the percentile or basic method " +
+	Summary: "A measure of spread from fewer than 60 units (caution), or from fewer than 15 by the percentile or " +
+		"basic method " +
 		"(stop). Without a declared shape the caution stands at every size.",
-	Action: "Look at the classical companion if the data are normal; use the studentized method, or take more units rather than more readings a unit.",
-	Source: "Simulation behind this program: nominal 95 % upper percentile bounds of the SD of normal data cover 66 % with 6 units, 75 % with 12, 89 % with 60",
+	Action: "Look at the classical companion if the data are normal; use the studentized method, or take more " +
+		"units rather than more readings a unit.",
+	Source: "Simulation behind this program: nominal 95 % upper percentile bounds of the SD of normal data cover " +
+		"66 % with 6 units, 75 % with 12, 89 % with 60",
 	check: func(in *Input) *finding {
 		if !in.resampled() || !slices.Contains(spreads, in.Plan.Name) {
 			return nil
 		}
 		n := in.units()
 		f := &finding{severity: Caution, evidence: []record.Value{value("units", float64(n))}}
-		f.text = fmt.Sprintf("Resampling bounds of a spread are too low on the upper side, the more so the longer the tails; there are %d units.", n)
+		f.text = fmt.Sprintf("Resampling bounds of a spread are too low on the upper side, the more so the longer "+
+			"the tails; there are %d units.", n)
 		if n < 15 && in.decides("percentile", "basic") {
 			f.severity = Stop
 		} else if n >= 60 {
-			f.text = "Resampling bounds of a spread depend on the tails of the distribution, which a sample hardly shows; this caution stands at every size."
+			f.text = "Resampling bounds of a spread depend on the tails of the distribution, which a sample hardly " +
+				"shows; this caution stands at every size."
 		}
 		return f
 	},
@@ -104,10 +115,12 @@ var spreadFromFewUnits = Definition{
 
 var narrowInterval = Definition{
 	Code: "narrow interval",
-	Summary: "The percentile interval of a mean is short by the factor √((n−1)/n)·z/t even for normal data: below 0.97 a note, " +
+	Summary: "The percentile interval of a mean is short by the factor √((n−1)/n)·z/t even for normal data: below " +
+		"0.97 a note, " +
 		"below 0.92 a caution.",
 	Action: "Use the studentized method, or let the companion decide.",
-	Source: "Hesterberg TC. What teachers should know about the bootstrap. The American Statistician 69 (2015) 371–386; the factor is arithmetic",
+	Source: "Hesterberg TC. What teachers should know about the bootstrap. The American Statistician 69 (2015) " +
+		"371–386; the factor is arithmetic",
 	check: func(in *Input) *finding {
 		if !in.decides("percentile", "basic", "normal", "bca") || !slices.Contains([]string{"mean", "trimmed mean", "geometric mean"}, in.Plan.Name) {
 			return nil
@@ -125,7 +138,8 @@ var narrowInterval = Definition{
 			return nil
 		}
 		f := &finding{severity: Note, evidence: []record.Value{value("units", n), value("factor", factor)},
-			text: fmt.Sprintf("With %.0f units this kind of interval is about %.0f %% too short even for well-behaved data.", n, 100*(1-factor))}
+			text: fmt.Sprintf("With %.0f units this kind of interval is about %.0f %% too short even for "+
+				"well-behaved data.", n, 100*(1-factor))}
 		if factor < 0.92 {
 			f.severity = Caution
 		}
@@ -135,10 +149,12 @@ var narrowInterval = Definition{
 
 var skewedMean = Definition{
 	Code: "skewed mean",
-	Summary: "Mean of skewed data: fewer than 25·g₁² units is a caution, fewer than 5·g₁² a stop, with g₁ the sample skewness. " +
+	Summary: "Mean of skewed data: fewer than 25·g₁² units is a caution, fewer than 5·g₁² a stop, with g₁ the " +
+		"sample skewness. " +
 		"Checked for independent rows.",
 	Action: "Use the studentized method; a median or geometric mean only if the protocol allows it.",
-	Source: "The rule 25·g₁² is Cochran's (Sampling Techniques, 3rd edition 1977, section 2.15; cited from memory), the stop is this program's",
+	Source: "The rule 25·g₁² is Cochran's (Sampling Techniques, 3rd edition 1977, section 2.15; cited from " +
+		"memory), the stop is this program's",
 	check: func(in *Input) *finding {
 		if in.Plan.Name != "mean" || in.Plan.Compare != nil || !in.Independent || !in.resampled() {
 			return nil
@@ -167,7 +183,8 @@ var skewedMean = Definition{
 			return nil
 		}
 		f := &finding{severity: Caution, evidence: []record.Value{value("skewness", g), value("units", n), value("units wanted", math.Ceil(wanted))},
-			text: fmt.Sprintf("Skewness %.2f would want about %.0f units for a mean; there are %.0f.", g, math.Ceil(wanted), n)}
+			text: fmt.Sprintf("Skewness %.2f would want about %.0f units for a mean; there are "+
+				"%.0f.", g, math.Ceil(wanted), n)}
 		if n < wanted/5 {
 			f.severity = Stop
 		}
@@ -176,10 +193,12 @@ var skewedMean = Definition{
 }
 
 var smallStratum = Definition{
-	Code:    "small stratum",
-	Summary: "A stratum with a single unit adds no spread to the resamples (stop); one with m units makes them too narrow by √((m−1)/m): fewer than 5 is a caution, fewer than 10 a note.",
-	Action:  "Join strata by a rule in the plan, or take more units in each.",
-	Source:  "Rao JNK, Wu CFJ. Resampling inference with complex survey data. Journal of the American Statistical Association 83 (1988) 231–241; the factor is arithmetic",
+	Code: "small stratum",
+	Summary: "A stratum with a single unit adds no spread to the resamples (stop); one with m units makes them too " +
+		"narrow by √((m−1)/m): fewer than 5 is a caution, fewer than 10 a note.",
+	Action: "Join strata by a rule in the plan, or take more units in each.",
+	Source: "Rao JNK, Wu CFJ. Resampling inference with complex survey data. Journal of the American Statistical " +
+		"Association 83 (1988) 231–241; the factor is arithmetic",
 	check: func(in *Input) *finding {
 		if !in.resampled() || len(in.Record.Design.By) == 0 {
 			return nil
@@ -202,7 +221,8 @@ var smallStratum = Definition{
 				severity = Caution
 			}
 			return &finding{severity: severity, evidence: evidence,
-				text: fmt.Sprintf("The smallest stratum, %s, has %d units; resampling within it understates its spread by the factor %.2f.",
+				text: fmt.Sprintf("The smallest stratum, %s, has %d units; resampling within it understates its "+
+					"spread by the factor %.2f.",
 					strconv.Quote(least.Name), least.Units, math.Sqrt((m-1)/m))}
 		}
 		return nil

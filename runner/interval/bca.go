@@ -10,16 +10,24 @@ var bca = Definition{
 	Name:     "bca",
 	Compare:  true,
 	Skewness: true,
-	Summary: "Bias-corrected and accelerated: percentile limits at levels shifted by the share of resample values below the " +
-		"estimate (ties count half) and by the skewness of the estimate, taken from the jackknife over resampling units.",
-	Formula: "level = Φ( z₀ + (z₀ + z)/(1 − a(z₀ + z)) ),  z₀ = Φ⁻¹( #{t* < t}/B + ½#{t* = t}/B ),  a = Σdᵢ³ / ( 6 (Σdᵢ²)^(3/2) )",
-	Where: "z is the normal quantile of the wanted level, Φ the normal distribution function, t the estimate, t* the B resample " +
-		"values, dᵢ = t̄₍·₎ − t₍ᵢ₎ with t₍ᵢ₎ the estimate without unit i; with strata of m units, d is multiplied by (m−1)/m " +
+	Summary: "Bias-corrected and accelerated: percentile limits at levels shifted by the share of resample values " +
+		"below the " +
+		"estimate (ties count half) and by the skewness of the estimate, taken from the jackknife over resampling " +
+		"units.",
+	Formula: "level = Φ( z₀ + (z₀ + z)/(1 − a(z₀ + z)) ),  z₀ = Φ⁻¹( #{t* < t}/B + ½#{t* = t}/B ),  a = Σdᵢ³ / ( 6 " +
+		"(Σdᵢ²)^(3/2) )",
+	Where: "z is the normal quantile of the wanted level, Φ the normal distribution function, t the estimate, t* " +
+		"the B resample " +
+		"values, dᵢ = t̄₍·₎ − t₍ᵢ₎ with t₍ᵢ₎ the estimate without unit i; with strata of m units, d is multiplied " +
+		"by (m−1)/m " +
 		"and centred within each",
-	Limits: "Not better than the percentile method below about 20 units. Undefined when all resample values lie on one side of " +
+	Limits: "Not better than the percentile method below about 20 units. Undefined when all resample values lie on " +
+		"one side of " +
 		"the estimate. Quantile-like statistics have a crude acceleration.",
-	Sources: []string{"Efron B. Better bootstrap confidence intervals. Journal of the American Statistical Association 82 (1987) 171–185",
-		"Davison AC, Hinkley DV. Bootstrap Methods and their Application. Cambridge University Press 1997, section 5.3.2"},
+	Sources: []string{"Efron B. Better bootstrap confidence intervals. Journal of the American Statistical " +
+		"Association 82 (1987) 171–185",
+		"Davison AC, Hinkley DV. Bootstrap Methods and their Application. Cambridge University Press 1997, section " +
+			"5.3.2"},
 	limits: func(in *Input) Result { return bcaLimits(in, 0.5) },
 }
 
@@ -31,7 +39,8 @@ func bcaLimits(in *Input, tieWeight float64) Result {
 	}
 	a := in.Acceleration
 	if math.IsNaN(a) {
-		return refuse("the acceleration is not defined: leaving out a unit never changes the estimate, or gives no estimate")
+		return refuse("the acceleration is not defined: leaving out a unit never changes the estimate, or gives no " +
+			"estimate")
 	}
 	share, _ := v.below(in.Estimate, tieWeight)
 	if share <= 0 || share >= 1 {

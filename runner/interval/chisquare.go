@@ -10,14 +10,18 @@ var chiSquare = Definition{
 	Name:       "chi-square",
 	Statistics: []string{"standard deviation", "variance"},
 	Classical:  true,
-	Summary: "The classical interval of a variance or standard deviation: the sum of squares divided by quantiles of the chi-square " +
+	Summary: "The classical interval of a variance or standard deviation: the sum of squares divided by quantiles " +
+		"of the chi-square " +
 		"distribution. Strata are not taken into account.",
 	Formula: "s²(n−1)/χ²_(1−α)(n−1)  to  s²(n−1)/χ²_α(n−1); square roots for a standard deviation",
-	Where:   "s² is the variance of n observations, χ²_α(ν) the quantile α of the chi-square distribution, α the probability beyond each limit",
-	Limits: "Exact for independent normal observations only, and badly wrong for others at every n: long tails make it too short, " +
+	Where: "s² is the variance of n observations, χ²_α(ν) the quantile α of the chi-square distribution, α the " +
+		"probability beyond each limit",
+	Limits: "Exact for independent normal observations only, and badly wrong for others at every n: long tails " +
+		"make it too short, " +
 		"short tails too long.",
 	Sources: []string{"Box GEP. Non-normality and tests on variances. Biometrika 40 (1953) 318–335",
-		"ISO 2854:1976, Statistical interpretation of data — Techniques of estimation and tests relating to means and variances"},
+		"ISO 2854:1976, Statistical interpretation of data — Techniques of estimation and tests relating to means " +
+			"and variances"},
 	limits: func(in *Input) Result {
 		if in.Sample == nil {
 			return refuse(dependent)

@@ -42,7 +42,8 @@ func TestRanks(t *testing.T) {
 		r := percentile.Find(in)
 		low, high := float64(tt.rank), float64(tt.resamples+1-tt.rank)
 		if tt.bound != spec.Upper && r.Lower != low || tt.bound != spec.Lower && r.Upper != high {
-			t.Errorf("B %d, %s %s: ranks %v and %v, want %v and %v (%s)", tt.resamples, tt.bound, tt.confidence, r.Lower,
+			t.Errorf("B %d, %s %s: ranks %v and %v, want %v and %v "+
+				"(%s)", tt.resamples, tt.bound, tt.confidence, r.Lower,
 				r.Upper, low, high, r.Reason)
 		}
 		if tt.bound == spec.Lower != math.IsNaN(r.Upper) || tt.bound == spec.Upper != math.IsNaN(r.Lower) {

@@ -9,13 +9,17 @@ import (
 var normal = Definition{
 	Name:    "normal",
 	Compare: true,
-	Summary: "The estimate, less its bias on the resamples, plus and minus the normal quantile times the standard deviation of " +
+	Summary: "The estimate, less its bias on the resamples, plus and minus the normal quantile times the standard " +
+		"deviation of " +
 		"the resample values.",
 	Formula: "(t − b) ± z·s*,  b = t̄* − t",
-	Where:   "t is the estimate, t̄* and s* are mean and standard deviation of the resample values, z is the normal quantile",
-	Limits: "Assumes that the estimate is about normally distributed and takes no account of skewness; a limit can lie " +
+	Where: "t is the estimate, t̄* and s* are mean and standard deviation of the resample values, z is the " +
+		"normal quantile",
+	Limits: "Assumes that the estimate is about normally distributed and takes no account of skewness; a limit can " +
+		"lie " +
 		"outside the possible values and is then cut, which the advisories say.",
-	Sources: []string{"Davison AC, Hinkley DV. Bootstrap Methods and their Application. Cambridge University Press 1997, section 5.2"},
+	Sources: []string{"Davison AC, Hinkley DV. Bootstrap Methods and their Application. Cambridge University Press " +
+		"1997, section 5.2"},
 	limits: func(in *Input) Result {
 		v := in.Values
 		if v.N() < 2 {

@@ -10,13 +10,18 @@ var orderStatistic = Definition{
 	Name:       "order statistic",
 	Statistics: []string{"median", "quantile"},
 	Classical:  true,
-	Summary: "The limits are observations: the ranks that reach at least the wanted confidence whatever the continuous distribution. " +
+	Summary: "The limits are observations: the ranks that reach at least the wanted confidence whatever the " +
+		"continuous distribution. " +
 		"The confidence really attained is stated. Ranks are found in exact integers.",
-	Formula: "lower = x₍ₗ₎ with the largest l for which P(X ≤ l−1) ≤ α;  upper = x₍ᵤ₎ with the smallest u for which P(X ≥ u) ≤ α;  X binomial(n, p)",
-	Where:   "x₍ₖ₎ is the k-th smallest of n observations, p the probability of the quantile, α the probability beyond each limit",
-	Limits: "For independent observations. With strata the draw is not binomial but less variable, so the interval is on the safe side " +
+	Formula: "lower = x₍ₗ₎ with the largest l for which P(X ≤ l−1) ≤ α;  upper = x₍ᵤ₎ with the smallest u for " +
+		"which P(X ≥ u) ≤ α;  X binomial(n, p)",
+	Where: "x₍ₖ₎ is the k-th smallest of n observations, p the probability of the quantile, α the probability " +
+		"beyond each limit",
+	Limits: "For independent observations. With strata the draw is not binomial but less variable, so the interval " +
+		"is on the safe side " +
 		"for the mixture. Ties raise the confidence. With few observations there may be no such rank.",
-	Sources: []string{"Thompson WR. On confidence ranges for the median and other expectation distributions for populations of unknown " +
+	Sources: []string{"Thompson WR. On confidence ranges for the median and other expectation distributions for " +
+		"populations of unknown " +
 		"distribution form. Annals of Mathematical Statistics 7 (1936) 122–128",
 		"ISO 16269-7:2001, Statistical interpretation of data — Part 7: Median — Estimation and confidence intervals"},
 	limits: func(in *Input) Result {
@@ -32,7 +37,8 @@ var orderStatistic = Definition{
 		high := n + 1 - mirror
 		level, _ := new(big.Rat).Sub(big.NewRat(1, 1), tail).Float64()
 		missing := func(extreme, side string, tail float64) Result {
-			return refuse(fmt.Sprintf("with %d observations even the %s lies %s the quantile with probability %.4f only; %.4f is needed",
+			return refuse(fmt.Sprintf("with %d observations even the %s lies %s the quantile with probability %.4f "+
+				"only; %.4f is needed",
 				n, extreme, side, 1-tail, level))
 		}
 		if in.lower() && low < 1 {

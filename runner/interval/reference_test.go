@@ -137,7 +137,8 @@ func TestSmallestSamples(t *testing.T) {
 			q, _ := mirror.Float64()
 			attained := 1 - math.Pow(q, float64(n))
 			if a.Lower != 1 || b.Upper != float64(n) || math.Abs(a.Attained-attained) > 1e-13 || a.Attained != b.Attained {
-				t.Errorf("p %s at %s, n %d: %+v, %+v; want the extremes, attained %v", tt.p, tt.confidence, n, a, b, attained)
+				t.Errorf("p %s at %s, n %d: %+v, %+v; want the extremes, attained "+
+					"%v", tt.p, tt.confidence, n, a, b, attained)
 			}
 			if !math.IsNaN(a.Upper) || !math.IsNaN(b.Lower) {
 				t.Errorf("p %s: a one-sided bound has a second limit: %+v, %+v", tt.p, a, b)
@@ -173,7 +174,8 @@ func TestMedianRanks(t *testing.T) {
 	for _, tt := range tests {
 		r := orderStatistic.Find(input(t, 0, upTo(tt.n)...))
 		if r.Lower != tt.lower || r.Upper != tt.high || math.Abs(r.Attained-tt.attained) > 1e-15 {
-			t.Errorf("n %d: %v to %v attained %.17g, want %v to %v, %.17g", tt.n, r.Lower, r.Upper, r.Attained, tt.lower,
+			t.Errorf("n %d: %v to %v attained %.17g, want %v to %v, "+
+				"%.17g", tt.n, r.Lower, r.Upper, r.Attained, tt.lower,
 				tt.high, tt.attained)
 		}
 	}

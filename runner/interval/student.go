@@ -11,15 +11,20 @@ var student = Definition{
 	Statistics: []string{"mean"},
 	Compare:    true,
 	Classical:  true,
-	Summary: "The classical interval of a mean: the mean plus and minus the t quantile times its standard error. For the difference " +
-		"of two independent groups the variances are not pooled and the degrees of freedom follow Welch and Satterthwaite. " +
+	Summary: "The classical interval of a mean: the mean plus and minus the t quantile times its standard error. " +
+		"For the difference " +
+		"of two independent groups the variances are not pooled and the degrees of freedom follow Welch and " +
+		"Satterthwaite. " +
 		"Strata are not taken into account.",
 	Formula: "x̄ ± t(n−1)·s/√n;  x̄₁ − x̄₂ ± t(ν)·√(s₁²/n₁ + s₂²/n₂)",
-	Where: "x̄ is the mean, s the standard deviation and n the number of observations of a group, t(ν) the quantile of Student's " +
+	Where: "x̄ is the mean, s the standard deviation and n the number of observations of a group, t(ν) the " +
+		"quantile of Student's " +
 		"distribution, ν = (s₁²/n₁ + s₂²/n₂)² / ( (s₁²/n₁)²/(n₁−1) + (s₂²/n₂)²/(n₂−1) )",
-	Limits: "Exact for independent normal observations only; for skewed data with few units one of its sides covers too little.",
+	Limits: "Exact for independent normal observations only; for skewed data with few units one of its sides " +
+		"covers too little.",
 	Sources: []string{"Student. The probable error of a mean. Biometrika 6 (1908) 1–25",
-		"Welch BL. The generalization of “Student’s” problem when several different population variances are involved. Biometrika 34 (1947) 28–35"},
+		"Welch BL. The generalization of “Student’s” problem when several different population variances are " +
+			"involved. Biometrika 34 (1947) 28–35"},
 	limits: func(in *Input) Result {
 		if in.Sample == nil {
 			return refuse(dependent)

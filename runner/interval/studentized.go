@@ -6,16 +6,22 @@ var studentized = Definition{
 	Name:    "studentized",
 	Compare: true,
 	Pivots:  true,
-	Summary: "On every resample the deviation from the estimate is divided by a standard error computed from that resample; the " +
-		"quantiles of these ratios take the place of the t table. The standard error comes from the empirical influence " +
-		"values summed over resampling units, or, for statistics without them, from the jackknife over resampling units.",
+	Summary: "On every resample the deviation from the estimate is divided by a standard error computed from that " +
+		"resample; the " +
+		"quantiles of these ratios take the place of the t table. The standard error comes from the empirical " +
+		"influence " +
+		"values summed over resampling units, or, for statistics without them, from the jackknife over resampling " +
+		"units.",
 	Formula: "lower = t − s·q₍B+1−k₎,  upper = t − s·q₍ₖ₎,  q = (t* − t)/s*,  k = ⌊(B+1)α⌋",
-	Where: "t is the estimate and s its standard error, t* and s* the same on a resample, q₍ₖ₎ the k-th smallest of the ratios, " +
+	Where: "t is the estimate and s its standard error, t* and s* the same on a resample, q₍ₖ₎ the k-th smallest " +
+		"of the ratios, " +
 		"α the probability beyond each limit",
-	Limits: "Can be very long when some resamples have almost no spread, as with fewer than about 8 units, many ties or " +
+	Limits: "Can be very long when some resamples have almost no spread, as with fewer than about 8 units, many " +
+		"ties or " +
 		"outliers. Resamples without a standard error are counted and reported.",
 	Sources: []string{"Efron B, Tibshirani RJ. An Introduction to the Bootstrap. Chapman & Hall 1993, section 12.5",
-		"Davison AC, Hinkley DV. Bootstrap Methods and their Application. Cambridge University Press 1997, section 5.2"},
+		"Davison AC, Hinkley DV. Bootstrap Methods and their Application. Cambridge University Press 1997, section " +
+			"5.2"},
 	limits: func(in *Input) Result {
 		if math.IsNaN(in.OwnError) {
 			return refuse("the sample gives no standard error for this statistic")

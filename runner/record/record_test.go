@@ -87,7 +87,8 @@ func TestEveryByteCounts(t *testing.T) {
 		changed[i] ^= 1
 		_, err := Read(bytes.NewReader(changed))
 		if err == nil && i < free {
-			t.Errorf("byte %d changed from %q to %q was not found: %s", i, whole[i], changed[i], changed[max(0, i-30):i+30])
+			t.Errorf("byte %d changed from %q to %q was not found: "+
+				"%s", i, whole[i], changed[i], changed[max(0, i-30):i+30])
 		}
 	}
 	for _, text := range []string{"", "{}", "[]", "null", string(whole[:len(whole)/2]), string(whole) + "x",

@@ -26,7 +26,8 @@ const (
 // and does not check its sums.
 func checkArchive(content []byte) (problem, fix string) {
 	if bytes.HasPrefix(content, []byte("\xd0\xcf\x11\xe0")) {
-		return "the workbook is protected by a password or has the old format .xls", "save it as .xlsx without a password"
+		return "the workbook is protected by a password or has the old format " +
+			".xls", "save it as .xlsx without a password"
 	}
 	archive, err := zip.NewReader(bytes.NewReader(content), int64(len(content)))
 	if err != nil {

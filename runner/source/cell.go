@@ -90,7 +90,8 @@ func notNumber(text string) (problem, fix string) {
 		return quoted + " is a value above a limit", "such values are not available in this version"
 	}
 	if body, found := strings.CutSuffix(text, "%"); found && plainNumber(strings.TrimSpace(body)) {
-		return quoted + " is a percentage", fmt.Sprintf("write %s and give the column the unit %%", strings.TrimSpace(body))
+		return quoted + " is a percentage", fmt.Sprintf("write %s and give the column the unit "+
+			"%%", strings.TrimSpace(body))
 	}
 	if plainNumber(strings.NewReplacer(",", "", ".", "").Replace(text)) && strings.Contains(text, ",") {
 		return quoted + " has a comma", "write decimals with a point and thousands without a separator"

@@ -140,7 +140,8 @@ func (f *separatedFile) otherSeparator(cells []string) (spec.Error, bool) {
 		return spec.Error{}, false
 	}
 	for _, other := range []struct{ mark, name, fix string }{
-		{";", "semicolons", "semicolons and decimal commas are not available in this version: save the file with commas " +
+		{";", "semicolons", "semicolons and decimal commas are not available in this version: save the file with " +
+			"commas " +
 			"between cells and decimal points"},
 		{"\t", "tabs", "give the file the name ending .tsv"},
 		{",", "commas", "give the file the name ending .csv"},

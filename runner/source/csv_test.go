@@ -76,7 +76,8 @@ func TestReadSeparated(t *testing.T) {
 			"\ufeffpouch,arm,strength,note\r\nP1,fresh,1.30,\r\n\r\n,,,\r\n  \r\n",
 			"2: pouch=\"P1\" arm=\"fresh\" strength=1.3 note=()\n", nil},
 		{"tabs", "peel.tsv", "pouch\tarm\tstrength\tnote\nP1\tfresh\t1.30\ta, b\n\tfresh\t\t\n",
-			"2: pouch=\"P1\" arm=\"fresh\" strength=1.3 note=\"a, b\"\n3: pouch=() arm=\"fresh\" strength=() note=()\n", nil},
+			"2: pouch=\"P1\" arm=\"fresh\" strength=1.3 note=\"a, b\"\n3: pouch=() arm=\"fresh\" strength=() " +
+				"note=()\n", nil},
 		{"quoted cells over several lines", "peel.csv",
 			"pouch,arm,strength,\"note\"\n\"P1\",fresh,\"1.30\",\"first\r\n\r\nthird \"\"line\"\"\"\nP2,aged,1.2,\n",
 			"2: pouch=\"P1\" arm=\"fresh\" strength=1.3 note=\"first\\n\\nthird \\\"line\\\"\"\n" +
@@ -92,7 +93,8 @@ func TestReadSeparated(t *testing.T) {
 			"2: pouch=\"a\" arm=\"aged\" strength=0 note=()\n3: pouch=\"b\" arm=\"aged\" strength=1.5 note=()\n" +
 				"4: pouch=\"c\" arm=\"aged\" strength=7 note=()\n5: pouch=\"d\" arm=\"aged\" strength=0.001 note=()\n" +
 				"6: pouch=\"e\" arm=\"aged\" strength=250 note=()\n7: pouch=\"f\" arm=\"aged\" strength=0 note=()\n" +
-				"8: pouch=\"g\" arm=\"aged\" strength=0.1 note=()\n9: pouch=\"h\" arm=\"aged\" strength=5e-324 note=()\n", nil},
+				"8: pouch=\"g\" arm=\"aged\" strength=0.1 note=()\n9: pouch=\"h\" arm=\"aged\" strength=5e-324 " +
+				"note=()\n", nil},
 	}
 	for _, tt := range tests {
 		t.Run(tt.name, func(t *testing.T) {
@@ -120,7 +122,8 @@ func TestReadOneColumn(t *testing.T) {
 	plan.Sources[0].Columns = plan.Sources[0].Columns[3:]
 	data, err := loadText(t, plan, "strength\n1\n\n  \n2\n\"\"\n3\n\"\"\n\n\n")
 	must(t, err)
-	want := "2: strength=1\n3: strength=()\n4: strength=()\n5: strength=2\n6: strength=()\n7: strength=3\n8: strength=()\n"
+	want := "2: strength=1\n3: strength=()\n4: strength=()\n5: strength=2\n6: strength=()\n7: strength=3\n8: " +
+		"strength=()\n"
 	if got := show(data.Tables[0]); got != want {
 		t.Errorf("got\n%swant\n%s", got, want)
 	}
@@ -138,11 +141,13 @@ func TestSeparatedMistakes(t *testing.T) {
 			"peel.csv: the file is empty; write headings in the first line and one row a line"}},
 		{"headings only", head, []string{
 			"peel.csv: the file has headings and no data rows; write one row a line below the headings"}},
-		{"UTF-16", "\xff\xfep\x00o\x00", []string{"peel.csv:1:1: the file is not UTF-8 but UTF-16 or UTF-32 text; " + utf8}},
+		{"UTF-16", "\xff\xfep\x00o\x00", []string{"peel.csv:1:1: the file is not UTF-8 but UTF-16 or UTF-32 text; " +
+			"" + utf8}},
 		{"UTF-16 without a mark", "p\x00o\x00", []string{"peel.csv:1:2: a zero byte stands in the text; " + utf8 +
 			"; text of another encoding may be the reason"}},
 		{"Latin-1", head + "P1,aged,1.3,m\xfcde\n", []string{"peel.csv:2:14: the byte FC is not UTF-8 text; " + utf8}},
-		{"workbook", "PK\x03\x04\x14\x00", []string{"peel.csv:1:1: the file is not text but a workbook or another archive; " +
+		{"workbook", "PK\x03\x04\x14\x00", []string{"peel.csv:1:1: the file is not text but a workbook or another " +
+			"archive; " +
 			"if it is a workbook, give it the name ending .xlsx"}},
 		{"old workbook", "\xd0\xcf\x11\xe0\xa1\xb1", []string{
 			"peel.csv:1:1: the file is not text but an old or protected workbook; " + utf8}},
@@ -156,7 +161,8 @@ func TestSeparatedMistakes(t *testing.T) {
 		{"blank first line", "\n" + head + "P1,aged,1.3,\n", []string{
 			"peel.csv:1:1: the file begins with a blank line; write the headings in the first line"}},
 		{"headings", "pouch,arm,Strength,note,,arm\nP1,aged,1.3,,,\n", []string{
-			"plan.yaml:1:1: peel.csv has no column \"strength\"; did you mean \"Strength\"? headings there: \"pouch\", \"arm\", " +
+			"plan.yaml:1:1: peel.csv has no column \"strength\"; did you mean \"Strength\"? headings there: " +
+				"\"pouch\", \"arm\", " +
 				"\"Strength\", \"note\", \"arm\"",
 			"peel.csv:1:25: column 5 has no heading; give each column a heading, or take the column out",
 			"peel.csv:1:26: heading \"arm\" stands over columns 2 and 6; give each column its own heading"}},
@@ -166,48 +172,62 @@ func TestSeparatedMistakes(t *testing.T) {
 			"plan.yaml:1:1: peel.csv has no column \"pouch\"; headings there: \"a\", \"b\"",
 			"plan.yaml:1:1: peel.csv has no column \"strength\"; headings there: \"a\", \"b\""}},
 		{"width", head + "P1,aged,1,3,\nP2,aged,1.3\nP3,aged,1.3,\n", []string{
-			"peel.csv:2:1: the row has 5 cells, the headings are 4; write decimals with a point, and a cell that holds the " +
+			"peel.csv:2:1: the row has 5 cells, the headings are 4; write decimals with a point, and a cell that " +
+				"holds the " +
 				"separator between quotation marks",
 			"peel.csv:3:1: the row has 3 cells, the headings are 4; write every cell, also the empty ones"}},
 		{"blank lines inside", head + "P1,aged,1.3,\n\n\n,,,\n \nP2,aged,x,\n", []string{
 			"peel.csv:3:1: lines 3 to 4 are blank; take them out", "peel.csv:5:1: line 5 is blank; take it out",
 			"peel.csv:6:1: line 6 is blank; take it out",
-			"peel.csv:7:9: column strength: \"x\" is not a number; write digits with a decimal point, or list the text under " +
+			"peel.csv:7:9: column strength: \"x\" is not a number; write digits with a decimal point, or list the " +
+				"text under " +
 				"missing of the source if it means no value"}},
 		{"place after characters of several bytes and lines", head + "\"ä€\nü\",aged,\"1,3x\",\n", []string{
-			"peel.csv:3:9: column strength: \"1,3x\" is not a number; write digits with a decimal point, or list the text " +
+			"peel.csv:3:9: column strength: \"1,3x\" is not a number; write digits with a decimal point, or list " +
+				"the text " +
 				"under missing of the source if it means no value"}},
 		{"place after a byte order mark", "\ufeffä,pouch,arm,strength,note,pouch\n", []string{
 			"peel.csv:1:27: heading \"pouch\" stands over columns 2 and 6; give each column its own heading"}},
 		{"quote inside", head + "P1,aged,1.3,5\" strip\n", []string{
-			"peel.csv:2:14: a quotation mark stands inside a cell that does not begin with one; write the cell between " +
+			"peel.csv:2:14: a quotation mark stands inside a cell that does not begin with one; write the cell " +
+				"between " +
 				"quotation marks, without blanks before them, and double the mark inside it"}},
 		{"quote not closed", head + "P1,aged,1.3,ok\nP2,aged,1.3,\"open\nP3,aged,1.3,ok\n", []string{
-			"peel.csv:3:1: a cell of the row that starts here begins with a quotation mark that is never closed; close the " +
+			"peel.csv:3:1: a cell of the row that starts here begins with a quotation mark that is never closed; " +
+				"close the " +
 				"cell with a quotation mark, and double the marks inside it"}},
 		{"text after the quote", head + "P1,aged,1.3,\"a\"b\n", []string{
-			"peel.csv:2:15: text follows the quotation mark that closes the cell; end the cell at the mark, or double the " +
+			"peel.csv:2:15: text follows the quotation mark that closes the cell; end the cell at the mark, or " +
+				"double the " +
 				"mark if it belongs to the text"}},
 		{"levels of the plan", head + "P1,agd,1.3,\nP1,Fresh,1.3,\nP1,old,1.3,\nP2,agd,1.3,\n", []string{
 			"peel.csv:2:4: column arm: \"agd\" is not one of the levels in the plan; did you mean \"aged\"? levels: " +
 				"\"fresh\", \"aged\"",
-			"peel.csv:3:4: column arm: \"Fresh\" is not one of the levels in the plan; did you mean \"fresh\"? levels: " +
+			"peel.csv:3:4: column arm: \"Fresh\" is not one of the levels in the plan; did you mean \"fresh\"? " +
+				"levels: " +
 				"\"fresh\", \"aged\"",
 			"peel.csv:4:4: column arm: \"old\" is not one of the levels in the plan; levels: \"fresh\", \"aged\"",
 			"peel.csv:5:4: column arm: \"agd\" is not one of the levels in the plan; did you mean \"aged\"? levels: " +
 				"\"fresh\", \"aged\""}},
-		{"spellings of a level", head + "P 1,aged,1.3,\nP 1 ,aged,1.3,\np 1,aged,1.3,\nP  1,aged,1.3,\nP\u00a01,aged,1.3,\n" +
+		{"spellings of a level", head + "P 1,aged,1.3,\nP 1 ,aged,1.3,\np 1,aged,1.3,\nP  " +
+			"1,aged,1.3,\nP\u00a01,aged,1.3,\n" +
 			"cafe\u0301,aged,1,\ncaf\u00e9,aged,1,\np 1,aged,1,\nP 1\u200b,aged,1,\n", []string{
-			"peel.csv:3:1: column pouch: levels \"P 1\" (line 2) and \"P 1 \" differ only in the blanks round them; write " +
+			"peel.csv:3:1: column pouch: levels \"P 1\" (line 2) and \"P 1 \" differ only in the blanks round " +
+				"them; write " +
 				"them alike",
-			"peel.csv:4:1: column pouch: levels \"P 1\" (line 2) and \"p 1\" differ only in letter case; write them alike",
-			"peel.csv:5:1: column pouch: levels \"P 1\" (line 2) and \"P  1\" differ only in the number of blanks; write " +
+			"peel.csv:4:1: column pouch: levels \"P 1\" (line 2) and \"p 1\" differ only in letter case; write " +
 				"them alike",
-			"peel.csv:6:1: column pouch: levels \"P 1\" (line 2) and \"P\\u00a01\" differ only in the number of blanks; write " +
+			"peel.csv:5:1: column pouch: levels \"P 1\" (line 2) and \"P  1\" differ only in the number of blanks; " +
+				"write " +
 				"them alike",
-			"peel.csv:8:1: column pouch: levels \"cafe\u0301\" (line 7) and \"café\" differ only in letter case, blanks, " +
+			"peel.csv:6:1: column pouch: levels \"P 1\" (line 2) and \"P\\u00a01\" differ only in the number of " +
+				"blanks; write " +
+				"them alike",
+			"peel.csv:8:1: column pouch: levels \"cafe\u0301\" (line 7) and \"café\" differ only in letter case, " +
+				"blanks, " +
 				"invisible characters or the coding of a character; write them alike",
-			"peel.csv:10:1: column pouch: levels \"P 1\" (line 2) and \"P 1\\u200b\" differ only in letter case, blanks, " +
+			"peel.csv:10:1: column pouch: levels \"P 1\" (line 2) and \"P 1\\u200b\" differ only in letter case, " +
+				"blanks, " +
 				"invisible characters or the coding of a character; write them alike"}},
 	}
 	for _, tt := range tests {
@@ -239,7 +259,8 @@ func TestSeparatorMistakesInTabFile(t *testing.T) {
 }
 
 func TestNumberMistakes(t *testing.T) {
-	const generic = "; write digits with a decimal point, or list the text under missing of the source if it means no " +
+	const generic = "; write digits with a decimal point, or list the text under missing of the source if it means " +
+		"no " +
 		"value"
 	tests := []struct{ cell, want string }{
 		{"1,3", `"1,3" has a comma; write decimals with a point and thousands without a separator`},
@@ -283,7 +304,8 @@ func TestManyMistakes(t *testing.T) {
 		rows int
 		last string
 	}{
-		{50, "peel.csv:51:9: column strength: \"x\" is not a number; write digits with a decimal point, or list the text " +
+		{50, "peel.csv:51:9: column strength: \"x\" is not a number; write digits with a decimal point, or list " +
+			"the text " +
 			"under missing of the source if it means no value"},
 		{51, "peel.csv: 1 more mistake is not listed; correct those above and check again"},
 		{1000, "peel.csv: 950 more mistakes are not listed; correct those above and check again"},

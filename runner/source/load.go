@@ -80,7 +80,8 @@ func load(plan *spec.Plan, s *spec.Source, dir string) (*Table, spec.Errors) {
 	case ".xlsx":
 		workbook(content, b)
 	default:
-		return nil, spec.Errors{plan.Mistake("sources."+s.Name+".file", "the kind of the file "+quote(s.File)+" is not known",
+		return nil, spec.Errors{plan.Mistake("sources."+s.Name+".file", "the kind of the file "+
+			""+quote(s.File)+" is not known",
 			"name a file that ends with .csv, .tsv or .xlsx")}
 	}
 	bad := append(b.planBad, b.bad.all()...)
@@ -128,7 +129,8 @@ func readFile(name string, most int64) ([]byte, error) {
 func unreadable(file string, err error) (problem, fix string) {
 	switch {
 	case errors.Is(err, fs.ErrNotExist):
-		return fmt.Sprintf("there is no file %s", quote(file)), "write the path as seen from the plan, with forward slashes"
+		return fmt.Sprintf("there is no file %s", quote(file)), "write the path as seen from the plan, with " +
+			"forward slashes"
 	case errors.Is(err, fs.ErrPermission):
 		return fmt.Sprintf("the file %s may not be read", quote(file)), "ask for permission to read it"
 	case errors.Is(err, errNoFile):

@@ -27,9 +27,11 @@ func TestLoadDigest(t *testing.T) {
 	plan.Sources[0].SHA256 = strings.Repeat("0", 64)
 	_, err := loadText(t, plan, goodFile+"P3,aged,x1,\n")
 	compare(t, err, []string{
-		"plan.yaml:1:1: the data in peel.csv differ from the digest in the plan; find out what changed in the file; if the " +
+		"plan.yaml:1:1: the data in peel.csv differ from the digest in the plan; find out what changed in the " +
+			"file; if the " +
 			"change is right, write sha256: " + fmt.Sprintf("%x", sha256.Sum256([]byte(goodFile+"P3,aged,x1,\n"))),
-		"peel.csv:4:9: column strength: \"x1\" is not a number; write digits with a decimal point, or list the text under " +
+		"peel.csv:4:9: column strength: \"x1\" is not a number; write digits with a decimal point, or list the " +
+			"text under " +
 			"missing of the source if it means no value",
 	})
 }

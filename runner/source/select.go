@@ -175,7 +175,8 @@ func (t *Table) Condition(text string, rows []int) ([]float64, error) {
 	out := make([]float64, len(rows))
 	for i, row := range rows {
 		if column := f.lacks(row); column != "" {
-			return nil, fmt.Errorf("the condition needs column %s, which has no value on line %d", column, t.Rows[row].Line)
+			return nil, fmt.Errorf("the condition needs column %s, which has no value on line "+
+				"%d", column, t.Rows[row].Line)
 		}
 		holds, err := f.holds(row)
 		if err != nil {

@@ -91,10 +91,12 @@ func TestLedger(t *testing.T) {
 		"2 used in second\n3 used in second\n4 excluded by 0\n5 excluded by 1\n6 missing per width\n7 outside\n" +
 			"8 missing pouch\n9 used in second\n10 missing per width\n11 missing per width\n12 used in first\n",
 		// weak: needs strength and arm; a note without a value compares as the empty text.
-		"2 used\n3 used\n4 excluded by 0\n5 excluded by 1\n6 missing strength\n7 used\n8 used\n9 missing arm\n10 used\n" +
+		"2 used\n3 used\n4 excluded by 0\n5 excluded by 1\n6 missing strength\n7 used\n8 used\n9 missing arm\n10 " +
+			"used\n" +
 			"11 missing strength\n12 used\n",
 		// repeatability: needs strength and pouch.
-		"2 used\n3 used\n4 excluded by 0\n5 excluded by 1\n6 missing strength\n7 used\n8 missing pouch\n9 used\n10 used\n" +
+		"2 used\n3 used\n4 excluded by 0\n5 excluded by 1\n6 missing strength\n7 used\n8 missing pouch\n9 used\n10 " +
+			"used\n" +
 			"11 missing strength\n12 used\n",
 	}
 	for i, s := range data.Selections {
@@ -136,18 +138,22 @@ func TestRuleMistakes(t *testing.T) {
 		want   []string
 	}{
 		{"derived value that does not exist", nil, sealData + "P9,fresh,1.5,,0\n", []string{
-			"peel.csv:13: derived column per width: strength / seal_width has no value where seal width 0, strength 1.5: " +
+			"peel.csv:13: derived column per width: strength / seal_width has no value where seal width 0, " +
+				"strength 1.5: " +
 				"division by zero; exclude the row with a reason, or change the formula"}},
 		{"exclusion in doubt on a used row", func(p *spec.Plan) {
 			p.Sources[0].Exclude[1].Where = "seal_width > 20"
 		}, sealData, []string{
-			"peel.csv:5: derived column per width: strength / seal_width has no value where seal width 0, strength 6.00: " +
+			"peel.csv:5: derived column per width: strength / seal_width has no value where seal width 0, strength " +
+				"6.00: " +
 				"division by zero; exclude the row with a reason, or change the formula"}},
 		{"the same for every statistic", func(p *spec.Plan) {
 			p.Sources[0].Exclude[1].Where = "seal_width < 1"
 		}, sealData, []string{
-			"peel.csv:10: the exclusion seal_width < 1 cannot be judged, because seal width has no value, and the row is " +
-				"used: pouch \"P2\", arm \"aged\", strength 1.22, note missing, seal width missing; write the condition without " +
+			"peel.csv:10: the exclusion seal_width < 1 cannot be judged, because seal width has no value, and the " +
+				"row is " +
+				"used: pouch \"P2\", arm \"aged\", strength 1.22, note missing, seal width missing; write the " +
+				"condition without " +
 				"seal width, or take the row out by another exclusion"}},
 		{"conditions and formulas", func(p *spec.Plan) {
 			p.Sources[0].Exclude[0].Where = `nota == "void"`
@@ -162,17 +168,20 @@ func TestRuleMistakes(t *testing.T) {
 			p.Statistics[3].With[0].Text = "arm < 2"
 		}, sealData, []string{
 			"plan.yaml:1:1: a condition is wanted, and this is a number; compare it with something, as in x > 1",
-			"plan.yaml:1:1: < compares a text with a number; write the value between quotation marks, as it stands in the data"}},
+			"plan.yaml:1:1: < compares a text with a number; write the value between quotation marks, as it stands " +
+				"in the data"}},
 		{"condition without a value", func(p *spec.Plan) { p.Statistics[0].Where = "1 / seal_width > 0" },
 			strings.Replace(sealData, "P2,aged,6.00,,0", "P2,aged,6.00,void,1", 1) + "P9,fresh,0,void,0\n" + "P9,fresh,,,0\n",
-			[]string{"peel.csv:14: the condition 1 / seal_width > 0 of statistic \"all\" cannot be judged where seal width 0: " +
+			[]string{"peel.csv:14: the condition 1 / seal_width > 0 of statistic \"all\" cannot be judged where " +
+				"seal width 0: " +
 				"division by zero; change the condition"}},
 		{"exclusion without a value", func(p *spec.Plan) {
 			p.Sources[0].Exclude[1].Where = "log(seal_width) < 0"
 			p.Sources[0].Derive = nil
 			p.Statistics = p.Statistics[:1]
 		}, strings.Replace(sealData, "P2,aged,1.22,,\n", "", 1), []string{
-			"peel.csv:5: the exclusion log(seal_width) < 0 cannot be judged where seal width 0: logarithm of a number that " +
+			"peel.csv:5: the exclusion log(seal_width) < 0 cannot be judged where seal width 0: logarithm of a " +
+				"number that " +
 				"is not positive; change the condition"}},
 		{"columns of a statistic", func(p *spec.Plan) {
 			p.Statistics[0].Of = []string{"strenth"}
@@ -220,8 +229,10 @@ func TestRuleMistakeInWorkbook(t *testing.T) {
 	})
 	_, err := loadBook(t, plan, content)
 	compare(t, err, []string{
-		"peel.xlsx: sheet Data, row 2: the exclusion seal_width < 1 cannot be judged, because seal width has no value, and " +
-			"the row is used: pouch \"P1\", arm missing, strength 1.5, note missing, seal width missing, x0 missing, x1 " +
+		"peel.xlsx: sheet Data, row 2: the exclusion seal_width < 1 cannot be judged, because seal width has no " +
+			"value, and " +
+			"the row is used: pouch \"P1\", arm missing, strength 1.5, note missing, seal width missing, x0 " +
+			"missing, x1 " +
 			"missing, x2 missing, …; write the condition without seal width, or take the row out by another exclusion"})
 }
 

@@ -23,7 +23,8 @@ func checkText(data []byte) *spec.Error {
 		return &spec.Error{Line: 1, Column: 1, Problem: "the file is not text but a workbook or another archive",
 			Fix: "if it is a workbook, give it the name ending .xlsx"}
 	case bytes.HasPrefix(data, []byte("\xd0\xcf\x11\xe0")):
-		return &spec.Error{Line: 1, Column: 1, Problem: "the file is not text but an old or protected workbook", Fix: utf8Fix}
+		return &spec.Error{Line: 1, Column: 1, Problem: "the file is not text but an old or protected " +
+			"workbook", Fix: utf8Fix}
 	}
 	at := len(data)
 	var problem, fix string

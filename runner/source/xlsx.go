@@ -252,7 +252,8 @@ func (s *sheet) plain(i int, value string) string {
 	c := &s.builder.table.Columns[s.builder.columns[i]]
 	k := s.kinds[i]
 	if k.unstored() {
-		s.builder.wrong(i, c, "the formula has no stored value", "open the workbook in a spreadsheet program and save it")
+		s.builder.wrong(i, c, "the formula has no stored "+
+			"value", "open the workbook in a spreadsheet program and save it")
 		return ""
 	}
 	switch k.kind {
@@ -260,7 +261,8 @@ func (s *sheet) plain(i int, value string) string {
 		if slices.Contains(s.builder.source().Missing, value) {
 			return value
 		}
-		s.builder.wrong(i, c, "the cell holds the error "+quote(value), "mend the formula, or clear the cell; if the error "+
+		s.builder.wrong(i, c, "the cell holds the error "+
+			""+quote(value), "mend the formula, or clear the cell; if the error "+
 			"means that there is no value, list it under missing of the source")
 		return ""
 	case "b":

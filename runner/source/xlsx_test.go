@@ -169,7 +169,8 @@ func TestWorkbookOneColumn(t *testing.T) {
 
 func TestWorkbookMistakes(t *testing.T) {
 	const place = "peel.xlsx: sheet Data"
-	const dates = "; dates are not available in this version: write it as text, or as a number of days; a spreadsheet " +
+	const dates = "; dates are not available in this version: write it as text, or as a number of days; a " +
+		"spreadsheet " +
 		"program also makes dates of entries such as 3.1"
 	const damage = "; open it in a spreadsheet program and save it again as .xlsx"
 	row := func(f *excelize.File, n int, values ...any) {
@@ -187,11 +188,14 @@ func TestWorkbookMistakes(t *testing.T) {
 			row(f, 2, "P1", "agd", "1,3")
 			row(f, 3, "p1", "aged", 1.3)
 		}, nil, []string{
-			place + ", cell B2: column arm: \"agd\" is not one of the levels in the plan; did you mean \"aged\"? levels: " +
+			place + ", cell B2: column arm: \"agd\" is not one of the levels in the plan; did you mean \"aged\"? " +
+				"levels: " +
 				"\"fresh\", \"aged\"",
-			place + ", cell C2: column strength: \"1,3\" has a comma; write decimals with a point and thousands without a " +
+			place + ", cell C2: column strength: \"1,3\" has a comma; write decimals with a point and thousands " +
+				"without a " +
 				"separator",
-			place + ", cell A3: column pouch: levels \"P1\" (row 2) and \"p1\" differ only in letter case; write them alike",
+			place + ", cell A3: column pouch: levels \"P1\" (row 2) and \"p1\" differ only in letter case; write " +
+				"them alike",
 		}},
 		{"error, TRUE, formula, dates", func(f *excelize.File) {
 			row(f, 2, "P1", "aged", 77.0, "ok")
@@ -205,7 +209,8 @@ func TestWorkbookMistakes(t *testing.T) {
 			must(t, err)
 			must(t, f.SetCellStyle("Data", "D6", "D6", style))
 		}, []string{`<c r="C2"><v>77</v></c>`, `<c r="C2" t="e"><f>1/0</f><v>#DIV/0!</v></c>`}, []string{
-			place + ", cell C2: column strength: the cell holds the error \"#DIV/0!\"; mend the formula, or clear the cell; " +
+			place + ", cell C2: column strength: the cell holds the error \"#DIV/0!\"; mend the formula, or clear " +
+				"the cell; " +
 				"if the error means that there is no value, list it under missing of the source",
 			place + ", cell A3: column pouch: the cell holds TRUE or FALSE; write a number or a text",
 			place + ", cell C4: column strength: the formula has no stored value; open the workbook in a spreadsheet " +
@@ -232,7 +237,8 @@ func TestWorkbookMistakes(t *testing.T) {
 		{"headings", func(f *excelize.File) {
 			row(f, 1, "pouch", "", "strength", "pouch", "arm")
 		}, nil, []string{
-			"plan.yaml:1:1: peel.xlsx has no column \"note\"; headings there: \"pouch\", \"strength\", \"pouch\", \"arm\"",
+			"plan.yaml:1:1: peel.xlsx has no column \"note\"; headings there: \"pouch\", \"strength\", \"pouch\", " +
+				"\"arm\"",
 			place + ", cell B1: column 2 has no heading; give each column a heading, or take the column out",
 			place + ", cell D1: heading \"pouch\" stands over columns 1 and 4; give each column its own heading",
 		}},
@@ -322,9 +328,12 @@ func TestArchiveMistakes(t *testing.T) {
 		want    string
 	}{
 		{"empty", nil, "peel.xlsx: the file is not a workbook; save it in a spreadsheet program as .xlsx"},
-		{"text", []byte("pouch,arm\n"), "peel.xlsx: the file is not a workbook; save it in a spreadsheet program as .xlsx"},
-		{"cut short", good[:len(good)/2], "peel.xlsx: the file is not a workbook; save it in a spreadsheet program as .xlsx"},
-		{"old format", []byte("\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1"), "peel.xlsx: the workbook is protected by a password or " +
+		{"text", []byte("pouch,arm\n"), "peel.xlsx: the file is not a workbook; save it in a spreadsheet program " +
+			"as .xlsx"},
+		{"cut short", good[:len(good)/2], "peel.xlsx: the file is not a workbook; save it in a spreadsheet program " +
+			"as .xlsx"},
+		{"old format", []byte("\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1"), "peel.xlsx: the workbook is protected by a " +
+			"password or " +
 			"has the old format .xls; save it as .xlsx without a password"},
 		{"another archive", raw(func(z *zip.Writer) { part(z, "a.txt", "a", 1, crc32.ChecksumIEEE([]byte("a"))) }), damage},
 		{"wrong sum", raw(func(z *zip.Writer) { part(z, "a.txt", "92345", 5, crc32.ChecksumIEEE([]byte("12345"))) }), damage},
@@ -337,7 +346,8 @@ func TestArchiveMistakes(t *testing.T) {
 		{"a part twice", raw(func(z *zip.Writer) {
 			part(z, "xl/a.xml", "a", 1, crc32.ChecksumIEEE([]byte("a")))
 			part(z, `XL\a.xml`, "a", 1, crc32.ChecksumIEEE([]byte("a")))
-		}), "peel.xlsx: the workbook holds the part \"XL\\\\a.xml\" twice; open it in a spreadsheet program and save it " +
+		}), "peel.xlsx: the workbook holds the part \"XL\\\\a.xml\" twice; open it in a spreadsheet program and " +
+			"save it " +
 			"again as .xlsx"},
 		{"many parts", raw(func(z *zip.Writer) {
 			for i := range mostParts + 1 {

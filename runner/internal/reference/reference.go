@@ -203,7 +203,8 @@ func (c Case) Compare(t testing.TB, got Figures, resamples int, without ...strin
 		} else if ok {
 			low, high := c.Range(t, name, want, resamples)
 			if !(v >= low && v <= high) {
-				t.Errorf("%s: %s = %.17g, want %.17g, allowed %.17g to %.17g\n%s\nsource: %s", c.ID, name, v, want, low, high,
+				t.Errorf("%s: %s = %.17g, want %.17g, allowed %.17g to %.17g\n%s\nsource: "+
+					"%s", c.ID, name, v, want, low, high,
 					c.Quantity, c.Source)
 			}
 		}

@@ -52,7 +52,8 @@ func TestRange(t *testing.T) {
 	for _, tt := range tests {
 		low, high := tt.c.Range(t, tt.name, tt.want, tt.resamples)
 		if math.Abs(low-tt.low) > 1e-9 || math.Abs(high-tt.high) > 1e-9 {
-			t.Errorf("%s, %d resamples: %g to %g, want %g to %g", tt.c.ToleranceKind, tt.resamples, low, high, tt.low, tt.high)
+			t.Errorf("%s, %d resamples: %g to %g, want %g to "+
+				"%g", tt.c.ToleranceKind, tt.resamples, low, high, tt.low, tt.high)
 		}
 	}
 }

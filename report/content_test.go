@@ -222,7 +222,7 @@ func TestTwoCriteria(t *testing.T) {
 			"confidence " +
 			"interval is −0.17 N/15mm; the criterion, at least −0.15 N/15mm, is not shown (absolute comparison, ASTM E29): " +
 			"the " +
-			"estimate, −0.11 N/15mm, is on its right side, the bound is not.",
+			"estimate, −0.110 N/15mm, is on its right side, the bound is not.",
 		"Loss of median peel strength by ageing (difference, aged less fresh): the upper limit of the two-sided 95 % " +
 			"confidence " +
 			"interval is −0.05 N/15mm; the criterion, at most 0.15 N/15mm, is met (absolute comparison, ASTM E29).",

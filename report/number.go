@@ -252,12 +252,24 @@ func leadingInterval(s *record.Statistic) *record.Interval {
 	return first
 }
 
-// estimateDecimals returns the decimals of the estimate: those of the limits beside it.
-func estimateDecimals(s *record.Statistic) int {
+// leadingDecimals returns the decimals of the limits that the reader looks at first.
+func leadingDecimals(s *record.Statistic) int {
 	if i := leadingInterval(s); i != nil {
 		return intervalDecimals(s, i)
 	}
 	return mostDecimals(s)
+}
+
+// estimateDecimals returns the decimals of the estimate: as many as the statistic has, since no Monte-Carlo error touches
+// it, and more where the limits beside it or its own side of a criterion need them.
+func estimateDecimals(s *record.Statistic) int {
+	decimals := max(mostDecimals(s), leadingDecimals(s))
+	for k := range s.Accept {
+		if a := &s.Accept[k]; s.Estimate != nil && a.Bound != nil && a.Verdict != "met" {
+			decimals = enough(decimals, *s.Estimate, a, a.Verdict == "not shown")
+		}
+	}
+	return decimals
 }
 
 // estimateFigure writes the estimate, without unit.
@@ -293,7 +305,7 @@ func limitFigures(s *record.Statistic, i *record.Interval) (lower, upper string)
 
 // boundFigure writes the bound that was compared with a criterion, without unit.
 func boundFigure(s *record.Statistic, a *record.Accept) string {
-	return figureText(a.Bound, estimateDecimals(s))
+	return figureText(a.Bound, leadingDecimals(s))
 }
 
 func figureText(v *float64, decimals int) string {

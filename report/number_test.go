@@ -153,7 +153,8 @@ func judged(criterion, limit string, bound, err float64, compared, verdict strin
 }
 
 // A reader who compares the printed bound with the criterion must come to the verdict. The error of 0.02 supports one
-// decimal only; more are printed where one would put the bound, or the estimate, on the wrong side.
+// decimal of the bound only; more are printed where one would put it on the wrong side. The estimate, which no Monte-Carlo
+// error touches, has the three decimals of the plan, or more.
 func TestPrintedBoundNeverContradictsVerdict(t *testing.T) {
 	tests := []struct {
 		name, criterion, limit string
@@ -162,20 +163,20 @@ func TestPrintedBoundNeverContradictsVerdict(t *testing.T) {
 		estimate               float64
 		want, wantEstimate     string
 	}{
-		{"far above", atLeast, "1.20", 1.2731, "1.2731", "met", 1.41, "1.3", "1.4"},
+		{"far above", atLeast, "1.20", 1.2731, "1.2731", "met", 1.41, "1.3", "1.410"},
 		{"just below", atLeast, "1.20", 1.1961, "1.1961", "not shown", 1.41, "1.196", "1.410"},
 		{"below by a hair", atLeast, "1.20", 1.19999999, "1.19999999", "not shown", 1.41, "1.19999999", "1.41000000"},
-		{"just above", atLeast, "1.20", 1.2400, "1.24", "met", 1.41, "1.2", "1.4"},
-		{"above, one decimal says less", atLeast, "1.24", 1.2449, "1.2449", "met", 1.41, "1.24", "1.41"},
-		{"equal", atLeast, "1.20", 1.2, "1.2", "met", 1.41, "1.2", "1.4"},
-		{"binary dust", atLeast, "0.2", 1.35 - 1.15, "0.2", "met", 0.4, "0.2", "0.4"},
+		{"just above", atLeast, "1.20", 1.2400, "1.24", "met", 1.41, "1.2", "1.410"},
+		{"above, one decimal says less", atLeast, "1.24", 1.2449, "1.2449", "met", 1.41, "1.24", "1.410"},
+		{"equal", atLeast, "1.20", 1.2, "1.2", "met", 1.41, "1.2", "1.410"},
+		{"binary dust", atLeast, "0.2", 1.35 - 1.15, "0.2", "met", 0.4, "0.2", "0.400"},
 		{"upper, just above", atMost, "0.10", 0.1004, "0.1004", "not shown", 0.06, "0.1004", "0.0600"},
 		{"upper, estimate too", atMost, "0.10", 0.153, "0.153", "not met", 0.1003, "0.1530", "0.1003"},
-		{"upper, below", atMost, "0.16", 0.153, "0.153", "met", 0.1, "0.15", "0.10"},
+		{"upper, below", atMost, "0.16", 0.153, "0.153", "met", 0.1, "0.15", "0.100"},
 		{"negative zero", atLeast, "0", -0.0001, "-0.0001", "not shown", 0.2, "−0.0001", "0.2000"},
-		{"rounded up and met", atLeast, "1.20", 1.1961, "1.20", "met", 1.41, "1.2", "1.4"},
-		{"rounded down and not shown", atLeast, "1.20", 1.1949, "1.19", "not shown", 1.41, "1.19", "1.41"},
-		{"rounded, upper", atMost, "0.1", 0.1499, "0.1", "met", 0.05, "0.1", "0.1"},
+		{"rounded up and met", atLeast, "1.20", 1.1961, "1.20", "met", 1.41, "1.2", "1.410"},
+		{"rounded down and not shown", atLeast, "1.20", 1.1949, "1.19", "not shown", 1.41, "1.19", "1.410"},
+		{"rounded, upper", atMost, "0.1", 0.1499, "0.1", "met", 0.05, "0.1", "0.050"},
 	}
 	for _, tt := range tests {
 		t.Run(tt.name, func(t *testing.T) {

@@ -110,10 +110,10 @@ func (s *bookSheet) decisions() {
 				s.heads(1, "Verdict", "Decision", ">Estimate", ">Bound", ">Criterion", ">Confidence", "Interval")
 				heads = false
 			}
-			places := estimateDecimals(one)
 			s.mark(a.Verdict)
 			for c, item := range []bookItem{say(decisionSentence(s.results, one, a)),
-				measured(one.Estimate, places, one.Unit, noFigure), measured(a.Bound, places, one.Unit, noFigure),
+				measured(one.Estimate, estimateDecimals(one), one.Unit, noFigure),
+				measured(a.Bound, leadingDecimals(one), one.Unit, noFigure),
 				criterionItem(one, a), confidenceItem(a.Confidence), say(orElse(a.Method, noFigure))} {
 				s.put(2+c, item, bookBody)
 			}

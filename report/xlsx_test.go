@@ -343,7 +343,7 @@ func TestFigurePoints(t *testing.T) {
 	for _, u := range []struct {
 		name string
 		x    float64
-	}{{"estimate 1.31 N/15mm", 1.31}, {"lower limit 1.27 N/15mm, bca", 1.27}, {"criterion: at least 1.20 N/15mm", 1.2}} {
+	}{{"estimate 1.310 N/15mm", 1.31}, {"lower limit 1.27 N/15mm, bca", 1.27}, {"criterion: at least 1.20 N/15mm", 1.2}} {
 		add(u.name, u.x, 0)
 		add("", u.x, 1.08*float64(most))
 	}

@@ -155,6 +155,29 @@ func TestEachAdvisoryFires(t *testing.T) {
 	}
 }
 
+// A doubt about resampling does not withhold the verdict of a classical interval that the plan names first; a doubt about
+// the rows does.
+func TestStopsReachWhatTheyConcern(t *testing.T) {
+	x := spaced(4)
+	few := table(4, func(i int) (string, string, float64, float64) { return fmt.Sprint("g", i), "a", x[i], 0 })
+	s := try(t, "statistic: mean, of: x, interval: [t, percentile], accept: {lower_at_least: 5}", few)
+	if s.Accept[0].Verdict != "met" || s.Accept[0].Method != "t" {
+		t.Errorf("t named first: %s by %q, %s", s.Accept[0].Verdict, s.Accept[0].Method, s.Accept[0].Why)
+	}
+	s = try(t, "statistic: mean, of: x, interval: [percentile, t], accept: {lower_at_least: 5}", few)
+	if s.Accept[0].Verdict != "not shown" || !strings.HasPrefix(s.Accept[0].Why, "stopped by few units") {
+		t.Errorf("percentile named first: %s, %s", s.Accept[0].Verdict, s.Accept[0].Why)
+	}
+	many := spaced(60)
+	clustered := table(60, func(i int) (string, string, float64, float64) {
+		return fmt.Sprint("g", i/6), "a", many[i] + 2*spaced(10)[i/6], 0
+	})
+	s = try(t, "statistic: mean, of: x, interval: t, accept: {lower_at_least: 5}", clustered)
+	if s.Accept[0].Verdict != "not shown" || s.Accept[0].Why != "stopped by pseudo-replication" {
+		t.Errorf("t on clustered rows: %s, %s", s.Accept[0].Verdict, s.Accept[0].Why)
+	}
+}
+
 // Clean tables raise nothing.
 func TestCleanTablesRaiseNothing(t *testing.T) {
 	x := spaced(120)

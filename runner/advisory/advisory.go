@@ -11,6 +11,7 @@ import (
 	"math"
 	"slices"
 
+	"lotproof/runner/interval"
 	"lotproof/runner/record"
 	"lotproof/runner/source"
 	"lotproof/spec"
@@ -71,9 +72,14 @@ func Check(in *Input) []record.Advisory {
 		if d.check == nil {
 			continue
 		}
-		if f := d.check(in); f != nil {
-			out = append(out, d.advisory(f))
+		f := d.check(in)
+		if f == nil {
+			continue
 		}
+		if f.severity == Stop && !d.Every && !resampling(in.Plan.Intervals[0]) {
+			f.severity = Caution // an exact or classical interval decides; the doubt is about the others
+		}
+		out = append(out, d.advisory(f))
 	}
 	order := map[string]int{Stop: 0, Caution: 1, Note: 2}
 	slices.SortStableFunc(out, func(a, b record.Advisory) int { return order[a.Severity] - order[b.Severity] })
@@ -103,13 +109,20 @@ func value(name string, v float64) record.Value {
 }
 
 // resampled says whether the plan asks for an interval made of resample values. The others need no advice about them.
-func (in *Input) resampled() bool {
-	for _, name := range in.Plan.Intervals {
-		if !slices.Contains([]string{"order statistic", "t", "chi-square", "Clopper-Pearson"}, name) {
-			return true
-		}
+func (in *Input) resampled() bool { return slices.ContainsFunc(in.Plan.Intervals, resampling) }
+
+// resampling says whether a method is made of resample values.
+func resampling(method string) bool {
+	d := interval.Lookup(method)
+	return d != nil && !d.Classical
+}
+
+// count writes a number with the singular or the plural of a noun.
+func count(n int, noun string) string {
+	if n == 1 {
+		return "1 " + noun
 	}
-	return false
+	return fmt.Sprintf("%d %ss", n, noun)
 }
 
 // decides says whether the interval that carries the verdict, the first, is one of the methods.

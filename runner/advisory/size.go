@@ -25,8 +25,8 @@ var fewUnits = Definition{
 			return nil
 		}
 		f := &finding{severity: Caution, evidence: []record.Value{value("units", float64(n))},
-			text: fmt.Sprintf("Only %d resampling units. An interval from resampling is not trustworthy at this "+
-				"size.", n)}
+			text: fmt.Sprintf("Only %s. An interval from resampling is not trustworthy at this size.",
+				count(n, "resampling unit"))}
 		if n < 5 {
 			f.severity = Stop
 		}
@@ -42,6 +42,7 @@ var quantileOutOfReach = Definition{
 	Action: "State the attained confidence, take more units, or ask for a less extreme quantile.",
 	Source: "The chance is 1 − (1−p)ⁿ for a lower and 1 − pⁿ for an upper bound (arithmetic; Wilks SS, Annals of " +
 		"Mathematical Statistics 12 (1941) 91–96)",
+	Every: true,
 	check: func(in *Input) *finding {
 		if in.Plan.Compare != nil || !slices.Contains([]string{"quantile", "median"}, in.Plan.Name) {
 			return nil
@@ -76,9 +77,9 @@ var quantileOutOfReach = Definition{
 		needed := math.Ceil(numeric.Log1p(-level)/rate - 1e-9)
 		return &finding{severity: Stop, evidence: []record.Value{value("units", n), value("attainable confidence", worst),
 			value("units needed", needed)},
-			text: fmt.Sprintf("With %.0f units no %s bound of this quantile reaches %s without assuming a "+
+			text: fmt.Sprintf("With %s no %s bound of this quantile reaches %s without assuming a "+
 				"distribution. The most "+
-				"that can be attained is %s; %.0f units are needed.", n, side, percent(level), percent(worst), needed)}
+				"that can be attained is %s; %.0f units are needed.", count(int(n), "unit"), side, percent(level), percent(worst), needed)}
 	},
 }
 

@@ -55,10 +55,12 @@ func decisionSentence(r *record.Results, s *record.Statistic, a *record.Accept) 
 		criterion, a.Verdict,
 		comparison(r, a))
 	estimate := withUnit(estimateFigure(s), s.Unit)
-	switch a.Verdict {
-	case "not shown":
+	switch {
+	case a.Verdict == "not shown" && boundRight(a):
+		text += fmt.Sprintf(": the bound lies past its own estimate, %s, which is on the wrong side", estimate)
+	case a.Verdict == "not shown":
 		text += fmt.Sprintf(": the estimate, %s, is on its right side, the bound is not", estimate)
-	case "not met":
+	case a.Verdict == "not met":
 		text += fmt.Sprintf(": the estimate, %s, and the bound are both on its wrong side", estimate)
 	}
 	if _, why, companion := strings.Cut(a.Why, byCompanion); companion {
@@ -132,9 +134,8 @@ func comparisonText(r *record.Results) string {
 	if rule == nil || !criteria {
 		return ""
 	}
-	text := "A criterion is met if its bound lies on the right side of the limit; a bound equal to the limit meets it. " +
-		"It is not met if the estimate too lies on the wrong side, and not shown if only the bound does, or if no bound " +
-		"carries a verdict. "
+	text := "A criterion is met if bound and estimate lie on the right side of the limit; equal counts as right. It is not " +
+		"met if neither does, and not shown if one of them does not, or if no bound carries a verdict. "
 	if rule.Rule == "rounded" {
 		ties := "to the even digit"
 		if rule.Ties == "away" {

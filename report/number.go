@@ -168,13 +168,31 @@ func intervalDecimals(s *record.Statistic, i *record.Interval) int {
 			if a.Bound == nil {
 				continue
 			}
-			decimals = enough(decimals, *a.Bound, a, a.Verdict == "met")
+			decimals = enough(decimals, *a.Bound, a, boundRight(a))
 			if s.Estimate != nil && a.Verdict != "met" {
-				decimals = enough(decimals, *s.Estimate, a, a.Verdict == "not shown")
+				decimals = enough(decimals, *s.Estimate, a, estimateRight(a))
 			}
 		}
 	}
 	return decimals
+}
+
+// boundRight says whether the bound was found on the right side of its criterion.
+func boundRight(a *record.Accept) bool {
+	limit, known := new(big.Rat).SetString(a.Limit)
+	compared, ok := new(big.Rat).SetString(a.Compared)
+	if !known || !ok {
+		return a.Verdict == "met"
+	}
+	if a.Criterion == atLeast {
+		return compared.Cmp(limit) >= 0
+	}
+	return compared.Cmp(limit) <= 0
+}
+
+// estimateRight says the same of the estimate: of a criterion that is not shown, one of the two is on the right side.
+func estimateRight(a *record.Accept) bool {
+	return a.Verdict == "met" || a.Verdict == "not shown" && !boundRight(a)
 }
 
 // enough raises the decimals until v, as printed, stands on the side of the criterion that was found. A bound that
@@ -266,7 +284,7 @@ func estimateDecimals(s *record.Statistic) int {
 	decimals := max(mostDecimals(s), leadingDecimals(s))
 	for k := range s.Accept {
 		if a := &s.Accept[k]; s.Estimate != nil && a.Bound != nil && a.Verdict != "met" {
-			decimals = enough(decimals, *s.Estimate, a, a.Verdict == "not shown")
+			decimals = enough(decimals, *s.Estimate, a, estimateRight(a))
 		}
 	}
 	return decimals

@@ -83,7 +83,7 @@ func TestEachAdvisoryFires(t *testing.T) {
 				return fmt.Sprint("g", i/30), "a", spaced(60)[i] + float64(i/30), 0
 			}), nil},
 		{"spread from few units", "stop", "statistic: standard deviation, of: x, bound: upper, interval: " +
-			"percentile", plain(14), nil},
+			"percentile", plain(14), []string{"biased estimate"}},
 		{"spread from few units", "caution", "statistic: standard deviation, of: x, bound: upper, interval: " +
 			"studentized", plain(100), nil},
 		{"skewed mean", "caution", "statistic: mean, of: x, interval: studentized",
@@ -103,11 +103,11 @@ func TestEachAdvisoryFires(t *testing.T) {
 		{"failed resamples", "stop", "statistic: Pearson correlation, of: [x, y], interval: percentile",
 			table(12, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i), "a", spaced(12)[i], float64(i / 11)
-			}), nil},
+			}), []string{"biased estimate"}},
 		{"resamples without spread", "stop", "statistic: standard deviation, of: x, interval: studentized",
 			table(12, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i), "a", float64(i / 11), 0
-			}), []string{"spread from few units", "coarse steps"}},
+			}), []string{"spread from few units", "coarse steps", "biased estimate"}},
 		{"coarse steps", "caution", "statistic: median, of: x, interval: percentile",
 			table(40, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i), "a", math.Round(spaced(40)[i]), 0
@@ -126,6 +126,10 @@ func TestEachAdvisoryFires(t *testing.T) {
 			table(60, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i%35), []string{"a", "b"}[i/35], spaced(60)[i], 0
 			}), nil},
+		{"biased estimate", "caution", "statistic: repeatability standard deviation, of: x, with: {factor: g}, interval: percentile",
+			table(120, func(i int) (string, string, float64, float64) {
+				return fmt.Sprint("g", i/2), "a", spaced(120)[i], 0
+			}), []string{"spread from few units"}},
 		{"seed could decide", "caution", "statistic: mean, of: x, bound: lower, interval: studentized, accept: " +
 			"{lower_at_least: 9.849}",
 			plain(60), nil},

@@ -32,8 +32,8 @@ const (
 const figureDigits = 15
 
 // judge compares a bound with a limit under a rule of ASTM E29 and returns the verdict and the decimal that was compared.
-// The criterion is met if the bound is on its right side (equal counts as met); otherwise it is not shown if the estimate
-// is on the right side, and not met if the estimate is not. The estimate is compared by the same rule.
+// The criterion is met if bound and estimate are on its right side (equal counts as right), not met if neither is, and not
+// shown if one of them is. The estimate is compared by the same rule.
 func judge(criterion string, limit spec.Number, bound, estimate float64, rule spec.Rounding) (verdict, compared string) {
 	at := decimal(limit.Text)
 	places := limit.Decimals()
@@ -50,13 +50,20 @@ func judge(criterion string, limit spec.Number, bound, estimate float64, rule sp
 		return d.Cmp(at) >= 0, text
 	}
 	met, compared := right(bound)
-	if met {
+	side, _ := right(estimate)
+	switch {
+	case met && side:
 		return Met, compared
-	}
-	if side, _ := right(estimate); side {
-		return NotShown, compared
+	case met || side:
+		return NotShown, compared // a bound past its own estimate shows nothing either
 	}
 	return NotMet, compared
+}
+
+// judgedRight says whether a bound by itself is on the right side of a limit.
+func judgedRight(criterion string, limit spec.Number, bound float64, rule spec.Rounding) bool {
+	verdict, _ := judge(criterion, limit, bound, bound, rule)
+	return verdict == Met
 }
 
 // decimal reads a decimal text exactly. The text comes from spec or from strconv.
@@ -121,11 +128,13 @@ func accept(p *spec.Statistic, rule *spec.Rounding, s *record.Statistic) {
 		}
 		if out.Bound != nil && s.Estimate != nil {
 			out.Verdict, out.Compared = judge(criterion, *limit, *out.Bound, *s.Estimate, *rule)
-			switch out.Verdict {
-			case Met:
+			switch rightSide := judgedRight(criterion, *limit, *out.Bound, *rule); {
+			case out.Verdict == Met:
 				out.Why = "the bound is on the right side of the criterion"
-			case NotMet:
+			case out.Verdict == NotMet:
 				out.Why = "estimate and bound are both on the wrong side of the criterion"
+			case rightSide:
+				out.Why = "the bound lies past its own estimate, which is on the wrong side of the criterion"
 			default:
 				out.Why = "the estimate is on the right side of the criterion, the bound is not"
 			}
@@ -156,29 +165,29 @@ func decide(p *spec.Statistic, s *record.Statistic) (*record.Interval, string) {
 			first = in
 		}
 	}
-	why := ""
-	switch {
-	case s.Estimate == nil:
+	if s.Estimate == nil {
 		return nil, "there is no estimate: " + s.EstimateReason
-	case first == nil:
+	}
+	if first == nil {
 		return nil, "no interval was computed"
+	}
+	var stops []string
+	for _, a := range s.Advisories {
+		if a.Severity == advisory.Stop {
+			stops = append(stops, a.Code)
+		}
+	}
+	stopped := "stopped by " + strings.Join(stops, ", ")
+	why := stopped
+	switch {
 	case first.Reason != "":
 		why = fmt.Sprintf("no %s limit: %s", first.Method, first.Reason)
-	default:
-		var stops []string
-		for _, a := range s.Advisories {
-			if a.Severity == "stop" && a.Code != "" {
-				stops = append(stops, a.Code)
-			}
-		}
-		if len(stops) == 0 {
-			first.Decides = true
-			return first, ""
-		}
-		why = "stopped by " + strings.Join(stops, ", ")
-		if slices.ContainsFunc(stops, advisory.StopsEvery) {
-			return nil, why
-		}
+	case len(stops) == 0:
+		first.Decides = true
+		return first, ""
+	}
+	if companion != nil && p.Companion == "decides" && slices.ContainsFunc(stops, advisory.StopsEvery) {
+		return nil, stopped
 	}
 	if p.Companion == "decides" && companion != nil {
 		if companion.Reason != "" {

@@ -42,7 +42,8 @@ func TestJudge(t *testing.T) {
 		{lowerAtLeast, "1.20", 1.10, 1.15, absolute, NotMet, "1.1"},
 		{lowerAtLeast, "1.20", 1.1999999, 1.3, absolute, NotShown, "1.1999999"},
 		{lowerAtLeast, "1.20", 1.195, 1.3, absolute, NotShown, "1.195"},
-		{lowerAtLeast, "1.20", 1.25, 1.1, absolute, Met, "1.25"}, // a bound beyond the estimate still decides
+		{lowerAtLeast, "1.20", 1.25, 1.1, absolute, NotShown, "1.25"}, // a bound past its estimate shows nothing
+		{upperAtMost, "0.22", 0.20, 0.24, absolute, NotShown, "0.2"},
 		// at most, absolute
 		{upperAtMost, "0.25", 0.20, 0.18, absolute, Met, "0.2"},
 		{upperAtMost, "0.25", 0.25, 0.18, absolute, Met, "0.25"},
@@ -154,6 +155,8 @@ func TestDecide(t *testing.T) {
 			"the bound is on the right side of the criterion; decided by the companion, as the plan says: stopped " +
 				"by few units"},
 		{"rows that are not independent", "decides", []record.Interval{good, other},
+			[]record.Advisory{{Code: "pseudo-replication", Severity: "stop"}}, "", NotShown, "stopped by pseudo-replication"},
+		{"rows that are not independent, and no limit", "decides", []record.Interval{none, other},
 			[]record.Advisory{{Code: "pseudo-replication", Severity: "stop"}}, "", NotShown, "stopped by pseudo-replication"},
 		{"no limit", "shown", []record.Interval{none, other}, nil, "", NotShown, "no bca limit: of a reason"},
 		{"no limit, companion decides", "decides", []record.Interval{none, other}, nil, "order statistic", Met,

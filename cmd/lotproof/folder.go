@@ -28,7 +28,7 @@ func reserve(study string) (*folder, error) {
 	}
 	last := 0
 	for _, e := range entries {
-		if n, err := strconv.Atoi(e.Name()); err == nil && n > last {
+		if n, err := strconv.Atoi(e.Name()); err == nil && n > last && len(e.Name()) <= 9 {
 			last = n
 		}
 	}

@@ -8,6 +8,7 @@ import (
 	"io"
 	"os"
 	"os/signal"
+	"strings"
 	"syscall"
 
 	"github.com/spf13/cobra"
@@ -15,6 +16,10 @@ import (
 
 func main() {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	go func() {
+		<-ctx.Done()
+		stop() // a second interrupt ends the program at once, whatever it is doing
+	}()
 	status := run(ctx, os.Args[1:], os.Stdout, os.Stderr)
 	stop()
 	os.Exit(status)
@@ -42,7 +47,10 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 	root.SetOut(stdout)
 	root.SetErr(stderr)
 	root.CompletionOptions.HiddenDefaultCmd = true
-	root.SetFlagErrorFunc(func(_ *cobra.Command, err error) error { return usage{err.Error()} })
+	root.SetFlagErrorFunc(func(_ *cobra.Command, err error) error {
+		text, _, _ := strings.Cut(err.Error(), ": strconv.") // how the library found it out is nobody's business
+		return usage{text}
+	})
 	var verdict bool
 	root.AddCommand(runCommand(&verdict), checkCommand(), replayCommand(), catalogueCommand(), versionCommand())
 	return status(root.ExecuteContext(ctx), verdict, stderr)

@@ -31,6 +31,14 @@ func prepare(file string) (*runner.Study, error) {
 	return runner.Prepare(plan, filepath.Dir(file))
 }
 
+// checkWorkers refuses a number of workers that makes no sense.
+func checkWorkers(workers int) error {
+	if workers < 0 {
+		return usage{fmt.Sprintf("--workers %d: write a whole number from 1, or leave it out", workers)}
+	}
+	return nil
+}
+
 // reason takes the operation and the path off an error of the file system; the caller says both in its own words.
 func reason(err error) error {
 	var path *fs.PathError

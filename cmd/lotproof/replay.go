@@ -38,7 +38,10 @@ func replayCommand() *cobra.Command {
 	c.Flags().IntVar(&workers, "workers", 0, "how many resamples are drawn at once; no influence on results "+
 		"(default: one a processor)")
 	c.RunE = func(c *cobra.Command, args []string) error {
-		r := &replay{out: c.OutOrStdout()}
+		if err := checkWorkers(workers); err != nil {
+			return err
+		}
+		r := &replay{out: &printer{w: c.OutOrStdout()}}
 		if err := r.read(args[0], data); err != nil {
 			return err
 		}
@@ -75,7 +78,7 @@ func replayCommand() *cobra.Command {
 
 // A replay compares a record with a new run and prints what it finds, a line each.
 type replay struct {
-	out     io.Writer
+	out     *printer
 	record  *record.Record
 	folder  string // of the record
 	data    string
@@ -123,7 +126,7 @@ func (r *replay) read(path, data string) error {
 	r.record = rec
 	fmt.Fprintf(r.out, "Replay of study %s, run %d of %s\n", rec.Results.Plan.Study, rec.Run.Number, rec.Run.Started)
 	if err != nil {
-		r.differ("record: its bytes are not those that its results digest stands for; it was changed after the run")
+		r.differ("record: its bytes are not those that its digests stand for; it was changed after the run")
 	}
 	absolute, err := filepath.Abs(path)
 	if err != nil {
@@ -223,9 +226,29 @@ func (r *replay) files(results *record.Results, study *runner.Study) error {
 }
 
 func (r *replay) end() error {
+	if r.out.err != nil {
+		return fmt.Errorf("the replay could not be printed: %w", reason(r.out.err))
+	}
 	if r.differs > 0 {
 		return difference{"the replay differs; see the lines above"}
 	}
-	fmt.Fprintln(r.out, "Every figure and every digest agrees.")
+	if fmt.Fprintln(r.out, "Every figure and every digest agrees."); r.out.err != nil {
+		return fmt.Errorf("the replay could not be printed: %w", reason(r.out.err))
+	}
 	return nil
+}
+
+// A printer remembers the first error of its writer, so that a full disk does not pass for success.
+type printer struct {
+	w   io.Writer
+	err error
+}
+
+func (p *printer) Write(b []byte) (int, error) {
+	if p.err != nil {
+		return 0, p.err
+	}
+	n, err := p.w.Write(b)
+	p.err = err
+	return n, err
 }

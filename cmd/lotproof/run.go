@@ -33,6 +33,9 @@ func runCommand(verdict *bool) *cobra.Command {
 	c.Flags().BoolVar(&asJSON, "json", false, "print the run record instead of the table")
 	c.RunE = func(c *cobra.Command, args []string) error {
 		started := time.Now()
+		if err := checkWorkers(workers); err != nil {
+			return err
+		}
 		study, err := prepare(args[0])
 		if err != nil {
 			return err
@@ -72,9 +75,14 @@ func runCommand(verdict *bool) *cobra.Command {
 		}
 		*verdict = results.Verdict == runner.NotMet || results.Verdict == runner.NotShown
 		if asJSON {
-			return rec.Write(c.OutOrStdout())
+			err = rec.Write(c.OutOrStdout())
+		} else {
+			err = report.Decisions(c.OutOrStdout(), rec, filepath.ToSlash(at))
 		}
-		return report.Decisions(c.OutOrStdout(), rec, filepath.ToSlash(at))
+		if err != nil {
+			return fmt.Errorf("the run is complete in %s, but could not be printed: %w", filepath.ToSlash(at), reason(err))
+		}
+		return nil
 	}
 	return c
 }

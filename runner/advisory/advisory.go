@@ -59,7 +59,7 @@ type Input struct {
 
 var registry = []*Definition{
 	&fewUnits, &quantileOutOfReach, &pseudoReplication, &spreadFromFewUnits, &skewedMean, &narrowInterval, &smallStratum,
-	&failedResamples, &pivotsWithoutError, &tiedValues, &unstableCorrection, &beyondRange, &partlyPaired, &seedMargin,
+	&failedResamples, &pivotsWithoutError, &biased, &tiedValues, &unstableCorrection, &beyondRange, &partlyPaired, &seedMargin,
 }
 
 // All returns the checks in the order of the catalogue.

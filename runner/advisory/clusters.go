@@ -7,6 +7,7 @@ import (
 
 	"lotproof/runner/numeric"
 	"lotproof/runner/record"
+	"lotproof/runner/statistic"
 	"lotproof/spec"
 )
 
@@ -48,8 +49,8 @@ var pseudoReplication = Definition{
 // accounted says whether the draw already takes account of a column.
 func (in *Input) accounted(name string) bool {
 	r := in.Plan.Resampling
-	for _, s := range in.Plan.With {
-		if s.Text == name {
+	for k, parameter := range statistic.Lookup(in.Plan.Name).Parameters {
+		if parameter.Kind == spec.KindCategory && in.Plan.With[k].Text == name {
 			return true // the factor of the statistic itself
 		}
 	}

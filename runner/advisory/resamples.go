@@ -40,6 +40,9 @@ var pivotsWithoutError = Definition{
 	check: func(in *Input) *finding {
 		f := shareOf(in.PivotsFailed, in.Record.Resamples)
 		if f != nil {
+			if f.severity == Stop && !in.decides("studentized") {
+				f.severity = Caution // another method carries the verdict
+			}
 			f.text = fmt.Sprintf("%d of %d resamples have no standard error above 0; the studentized limits rest "+
 				"on the others.",
 				in.PivotsFailed, in.Record.Resamples)
@@ -60,6 +63,26 @@ func shareOf(failed, all int) *finding {
 		f.severity = Caution
 	}
 	return f
+}
+
+var biased = Definition{
+	Code:    "biased estimate",
+	Summary: "The mean of the resample values differs from the estimate by more than a quarter of their standard deviation (caution).",
+	Action: "Use the bca interval, or an estimator with less bias, in the plan; for readings within groups, draw whole groups " +
+		"and not the readings in them.",
+	Source: "Efron B, Tibshirani RJ. An Introduction to the Bootstrap. Chapman & Hall 1993, section 10.3",
+	check: func(in *Input) *finding {
+		if !in.resampled() || in.Record.Bias == nil || in.Record.StandardError == nil || *in.Record.StandardError == 0 {
+			return nil
+		}
+		ratio := *in.Record.Bias / *in.Record.StandardError
+		if math.Abs(ratio) <= 0.25 {
+			return nil
+		}
+		return &finding{severity: Caution, evidence: []record.Value{value("bias", *in.Record.Bias),
+			value("bias in standard errors", ratio)},
+			text: fmt.Sprintf("The resamples say that the statistic is biased at this size, by %.2f standard errors.", ratio)}
+	},
 }
 
 var tiedValues = Definition{

@@ -180,7 +180,7 @@ var skewedMean = Definition{
 		second, third = second/n, third/n
 		g := third / float64(second*math.Sqrt(second))
 		wanted := 25 * float64(g*g)
-		if n >= wanted {
+		if !(n < wanted) || math.IsInf(wanted, 0) { // also where the moments cannot be represented
 			return nil
 		}
 		f := &finding{severity: Caution, evidence: []record.Value{value("skewness", g), value("units", n), value("units wanted", math.Ceil(wanted))},

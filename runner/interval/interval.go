@@ -103,6 +103,9 @@ func Catalogue() []spec.IntervalEntry {
 // Find returns the limits of the method. Limits of a statistic outside its possible values are cut at their edge.
 func (d *Definition) Find(in *Input) Result {
 	r := d.limits(in)
+	if r.Reason == "" && (in.lower() && math.IsNaN(r.Lower) || in.upper() && math.IsNaN(r.Upper)) {
+		return refuse("the limit is too large to be represented")
+	}
 	if !in.lower() {
 		r.Lower, r.LowerError = math.NaN(), math.NaN()
 	}

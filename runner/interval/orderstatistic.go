@@ -4,6 +4,9 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"sort"
+
+	"lotproof/runner/numeric"
 )
 
 var orderStatistic = Definition{
@@ -66,7 +69,12 @@ var orderStatistic = Definition{
 // lowerPlace returns the largest l ≥ 0 with P(X ≤ l−1) ≤ tail for X binomial(n, p), and that probability; for l = 0,
 // where no observation will do, it returns the probability P(X ≤ 0) that stands in the way. With p = a/b everything is
 // decided in integers: C(n, j) aʲ (b−a)ⁿ⁻ʲ against tail·bⁿ.
+//
+// Above exactRows observations the integers grow too long; then the incomplete beta function, good to 12 digits, decides.
 func lowerPlace(n int, p, tail *big.Rat) (l int, below float64) {
+	if n > exactRows {
+		return lowerPlaceByBeta(n, p, tail)
+	}
 	a, b := p.Num(), p.Denom()
 	rest := new(big.Int).Sub(b, a)
 	whole := new(big.Int).Exp(b, big.NewInt(int64(n)), nil)
@@ -94,4 +102,19 @@ func lowerPlace(n int, p, tail *big.Rat) (l int, below float64) {
 			return j, share(last)
 		}
 	}
+}
+
+// exactRows is the largest number of observations for which ranks are found in integers; it takes some tenths of a second.
+const exactRows = 5000
+
+func lowerPlaceByBeta(n int, p, tail *big.Rat) (l int, below float64) {
+	rest, _ := new(big.Rat).Sub(big.NewRat(1, 1), p).Float64()
+	allowed, _ := tail.Float64()
+	// P(X ≤ l−1) = I(n−l+1, l) at 1 − p.
+	upTo := func(l int) float64 { return numeric.IncompleteBeta(float64(n-l+1), float64(l), rest) }
+	l = sort.Search(n, func(i int) bool { return upTo(i+1) > allowed }) // the first l+1 that is too much
+	if l == 0 {
+		return 0, upTo(1)
+	}
+	return l, upTo(l)
 }

@@ -90,9 +90,9 @@ func (v *Values) spread(k int, p float64) float64 {
 }
 
 // below returns the share of values below t, those equal to t counting with the given weight. Values that differ from t
-// by rounding alone count as equal: within 10⁻¹⁰ of the size of t and of the spread of the values.
+// by rounding alone count as equal: within 10⁻¹⁰ of the spread of the values and some units of the last place of t.
 func (v *Values) below(t, weight float64) (share float64, equal int) {
-	tolerance := float64(1e-10 * (math.Abs(t) + v.sd))
+	tolerance := float64(1e-10*v.sd) + float64(0x1p-49*math.Abs(t))
 	first, _ := slices.BinarySearch(v.sorted, t-tolerance)
 	after, _ := slices.BinarySearchFunc(v.sorted, t+tolerance, func(x, limit float64) int {
 		if x <= limit {

@@ -12,8 +12,10 @@ import (
 
 // Digest returns the SHA-256 of the compact JSON of the results, hexadecimal: the digest that a record carries as
 // results_sha256. Keys stand in the order of the types, numbers are the shortest that read back exactly.
-func (r *Results) Digest() (string, error) {
-	b, err := compact(r)
+func (r *Results) Digest() (string, error) { return digestOf(r) }
+
+func digestOf(v any) (string, error) {
+	b, err := compact(v)
 	if err != nil {
 		return "", err
 	}
@@ -37,7 +39,9 @@ func New(results *Results, run Run) (*Record, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &Record{Version: Version, Results: *results, ResultsSHA256: digest, Run: run}, nil
+	r := &Record{Version: Version, Results: *results, ResultsSHA256: digest, Run: run}
+	r.RunSHA256, err = digestOf(&r.Run)
+	return r, err
 }
 
 // Write writes the record as indented JSON with one newline at the end. The same record gives the same bytes.
@@ -52,7 +56,7 @@ func (r *Record) Write(w io.Writer) error {
 var (
 	ErrNotRecord = errors.New("not a run record of this program")
 	ErrVersion   = errors.New("a run record of another layout")
-	ErrAltered   = errors.New("the results do not agree with the digest that the record carries")
+	ErrAltered   = errors.New("the content does not agree with the digests that the record carries")
 )
 
 // limit is the largest record that Read takes.
@@ -90,7 +94,11 @@ func Read(r io.Reader) (*Record, error) {
 	if err != nil {
 		return nil, err
 	}
-	if digest != out.ResultsSHA256 {
+	ofRun, err := digestOf(&out.Run)
+	if err != nil {
+		return nil, err
+	}
+	if digest != out.ResultsSHA256 || ofRun != out.RunSHA256 {
 		return &out, ErrAltered
 	}
 	// The digest is over the content. The file itself must also be just what Write makes, so that no byte is free.

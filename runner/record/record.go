@@ -20,6 +20,7 @@ type Record struct {
 	Results       Results `json:"results"`
 	ResultsSHA256 string  `json:"results_sha256"` // of the compact JSON of Results
 	Run           Run     `json:"run"`
+	RunSHA256     string  `json:"run_sha256"` // of the compact JSON of Run
 }
 
 // Results are reproducible to the byte from the plan, the sources and the program.

@@ -77,18 +77,16 @@ func TestDigestIsOfCompactJSON(t *testing.T) {
 	}
 }
 
-// Every single changed byte of a record is found: as no record, or as an altered one. Only the part on the run, which is
-// not reproducible, may change unseen, as long as it is written as it should be.
+// Every single changed byte of a record is found: as no record, or as an altered one.
 func TestEveryByteCounts(t *testing.T) {
 	whole := written(t, sample(t))
-	free := bytes.Index(whole, []byte(`"run": {`))
 	for i := range whole {
 		changed := bytes.Clone(whole)
 		changed[i] ^= 1
 		_, err := Read(bytes.NewReader(changed))
-		if err == nil && i < free {
+		if err == nil {
 			t.Errorf("byte %d changed from %q to %q was not found: "+
-				"%s", i, whole[i], changed[i], changed[max(0, i-30):i+30])
+				"%s", i, whole[i], changed[i], changed[max(0, i-30):min(len(whole), i+30)])
 		}
 	}
 	for _, text := range []string{"", "{}", "[]", "null", string(whole[:len(whole)/2]), string(whole) + "x",

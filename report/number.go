@@ -158,6 +158,9 @@ func unitOf(decimals int) float64 {
 // as many as keep limit and estimate, as printed, on the side of the criterion where they were found.
 func intervalDecimals(s *record.Statistic, i *record.Interval) int {
 	decimals := supported(mostDecimals(s), i.MonteCarloError.Lower, i.MonteCarloError.Upper)
+	for decimals < mostDecimals(s) && !inOrder(s, i, decimals) {
+		decimals++
+	}
 	if !i.Decides {
 		return decimals
 	}
@@ -175,6 +178,32 @@ func intervalDecimals(s *record.Statistic, i *record.Interval) int {
 		}
 	}
 	return decimals
+}
+
+// inOrder says whether the limits, as printed, still stand on their sides of the estimate and apart from each other, if they
+// do so as found.
+func inOrder(s *record.Statistic, i *record.Interval, decimals int) bool {
+	printed := func(v float64) *big.Rat {
+		d, _ := new(big.Rat).SetString(judgedDecimal(v).FloatString(decimals))
+		return d
+	}
+	if i.Lower != nil && i.Upper != nil && *i.Lower < *i.Upper && printed(*i.Lower).Cmp(printed(*i.Upper)) >= 0 {
+		return false
+	}
+	if s.Estimate == nil {
+		return true
+	}
+	estimate := printedEstimate(s)
+	if i.Lower != nil && *i.Lower <= *s.Estimate && printed(*i.Lower).Cmp(estimate) > 0 {
+		return false
+	}
+	return i.Upper == nil || *i.Upper < *s.Estimate || printed(*i.Upper).Cmp(estimate) >= 0
+}
+
+// printedEstimate is the estimate with the decimals of its statistic.
+func printedEstimate(s *record.Statistic) *big.Rat {
+	d, _ := new(big.Rat).SetString(judgedDecimal(*s.Estimate).FloatString(mostDecimals(s)))
+	return d
 }
 
 // boundRight says whether the bound was found on the right side of its criterion.

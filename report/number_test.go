@@ -3,6 +3,7 @@ package report
 import (
 	"math"
 	"math/big"
+	"strconv"
 	"testing"
 
 	"lotproof/runner/record"
@@ -261,5 +262,27 @@ func TestStandardErrorAndBias(t *testing.T) {
 	}
 	if got := standardErrorFigure(&record.Statistic{}) + biasFigure(&record.Statistic{}); got != "nonenone" {
 		t.Errorf("figures that are not there are written %q", got)
+	}
+}
+
+// Limits whose Monte-Carlo errors support few decimals must still read as lying on their sides of the estimate and apart.
+func TestPrintedLimitsStayInOrder(t *testing.T) {
+	for _, tt := range []struct{ estimate, lower, upper, err float64 }{
+		{0.00009, 0.0000637, 0.000145, 0.000004}, {5.0010, 4.9966, 5.0054, 0.0004}, {1.38, 1.36, 1.43, 0.02},
+	} {
+		s := &record.Statistic{Decimals: 8, Estimate: &tt.estimate}
+		i := &record.Interval{Bound: spec.TwoSided, Lower: &tt.lower, Upper: &tt.upper,
+			MonteCarloError: record.Limits{Lower: &tt.err, Upper: &tt.err}}
+		lower, upper := limitFigures(s, i)
+		read := func(text string) float64 {
+			v, err := strconv.ParseFloat(text, 64)
+			if err != nil {
+				t.Fatal(err)
+			}
+			return v
+		}
+		if !(read(lower) <= tt.estimate && tt.estimate <= read(upper) && read(lower) < read(upper)) {
+			t.Errorf("estimate %v, limits %v and %v, are printed as %s to %s", tt.estimate, tt.lower, tt.upper, lower, upper)
+		}
 	}
 }

@@ -126,7 +126,8 @@ func TestEachAdvisoryFires(t *testing.T) {
 			table(60, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i%35), []string{"a", "b"}[i/35], spaced(60)[i], 0
 			}), nil},
-		{"biased estimate", "caution", "statistic: repeatability standard deviation, of: x, with: {factor: g}, interval: percentile",
+		{"biased estimate", "caution", "statistic: repeatability standard deviation, of: x, with: {factor: g}, " +
+			"interval: percentile",
 			table(120, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i/2), "a", spaced(120)[i], 0
 			}), []string{"spread from few units"}},

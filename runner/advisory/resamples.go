@@ -67,8 +67,10 @@ func shareOf(failed, all int) *finding {
 
 var biased = Definition{
 	Code:    "biased estimate",
-	Summary: "The mean of the resample values differs from the estimate by more than a quarter of their standard deviation (caution).",
-	Action: "Use the bca interval, or an estimator with less bias, in the plan; for readings within groups, draw whole groups " +
+	Summary: "The mean of the resample values differs from the estimate by more than a quarter of their standard " +
+		"deviation, beyond its Monte-Carlo error (caution).",
+	Action: "Use the bca interval, or an estimator with less bias, in the plan; for readings within groups, draw " +
+		"whole groups " +
 		"and not the readings in them.",
 	Source: "Efron B, Tibshirani RJ. An Introduction to the Bootstrap. Chapman & Hall 1993, section 10.3",
 	check: func(in *Input) *finding {
@@ -76,12 +78,14 @@ var biased = Definition{
 			return nil
 		}
 		ratio := *in.Record.Bias / *in.Record.StandardError
-		if math.Abs(ratio) <= 0.25 {
+		noise := 2 / math.Sqrt(float64(max(1, len(in.Values)))) // two Monte-Carlo standard errors of the mean
+		if math.Abs(ratio)-noise <= 0.25 {
 			return nil
 		}
 		return &finding{severity: Caution, evidence: []record.Value{value("bias", *in.Record.Bias),
 			value("bias in standard errors", ratio)},
-			text: fmt.Sprintf("The resamples say that the statistic is biased at this size, by %.2f standard errors.", ratio)}
+			text: fmt.Sprintf("The resamples say that the statistic is biased at this size, by %.2f standard " +
+				"errors.", ratio)}
 	},
 }
 

@@ -148,7 +148,7 @@ func prepare(plan *spec.Plan, i int, selection *source.Selection) (*analysis, *s
 	for k, name := range p.Intervals {
 		d := interval.Lookup(name)
 		if d.Classical && p.Compare != nil && p.Compare.As == "ratio" {
-			return mistake(fmt.Sprintf(".interval[%d]", k), fmt.Sprintf("interval %s has no form for the ratio of " +
+			return mistake(fmt.Sprintf(".interval[%d]", k), fmt.Sprintf("interval %s has no form for the ratio of "+
 				"two groups", name),
 				"name an interval made of resample values, or compare as: difference")
 		}
@@ -166,7 +166,7 @@ func prepare(plan *spec.Plan, i int, selection *source.Selection) (*analysis, *s
 		if most == 1 && c.limit.Value > 1 && c.limit.Value <= 100 {
 			fix = "write 0.98 for 98 %"
 		}
-		return mistake(".accept."+c.key, fmt.Sprintf("%s %s is not a possible value of the " +
+		return mistake(".accept."+c.key, fmt.Sprintf("%s %s is not a possible value of the "+
 			"statistic", c.key, c.limit.Text), fix)
 	}
 	a.classical()

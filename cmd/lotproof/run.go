@@ -80,7 +80,7 @@ func runCommand(verdict *bool) *cobra.Command {
 			err = report.Decisions(c.OutOrStdout(), rec, filepath.ToSlash(at))
 		}
 		if err != nil {
-			return fmt.Errorf("the run is complete in %s, but could not be printed: " +
+			return fmt.Errorf("the run is complete in %s, but could not be printed: "+
 				"%w", filepath.ToSlash(at), reason(err))
 		}
 		return nil

@@ -66,7 +66,7 @@ func shareOf(failed, all int) *finding {
 }
 
 var biased = Definition{
-	Code:    "biased estimate",
+	Code: "biased estimate",
 	Summary: "The mean of the resample values differs from the estimate by more than a quarter of their standard " +
 		"deviation, beyond its Monte-Carlo error (caution).",
 	Action: "Use the bca interval, or an estimator with less bias, in the plan; for readings within groups, draw " +
@@ -84,7 +84,7 @@ var biased = Definition{
 		}
 		return &finding{severity: Caution, evidence: []record.Value{value("bias", *in.Record.Bias),
 			value("bias in standard errors", ratio)},
-			text: fmt.Sprintf("The resamples say that the statistic is biased at this size, by %.2f standard " +
+			text: fmt.Sprintf("The resamples say that the statistic is biased at this size, by %.2f standard "+
 				"errors.", ratio)}
 	},
 }

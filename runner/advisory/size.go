@@ -79,7 +79,7 @@ var quantileOutOfReach = Definition{
 			value("units needed", needed)},
 			text: fmt.Sprintf("With %s no %s bound of this quantile reaches %s without assuming a "+
 				"distribution. The most "+
-				"that can be attained is %s; %.0f units are " +
+				"that can be attained is %s; %.0f units are "+
 				"needed.", count(int(n), "unit"), side, percent(level), percent(worst), needed)}
 	},
 }

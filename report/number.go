@@ -243,7 +243,7 @@ func enough(decimals int, v float64, a *record.Accept, right bool) int {
 		} else if rounded {
 			break
 		}
-		agrees := true
+		agrees := rounded || d.Cmp(limit) != 0 || judgedDecimal(v).Cmp(limit) == 0 // not equal in print alone
 		for _, d := range sides {
 			side := d.Cmp(limit)
 			agrees = agrees && (a.Criterion == atLeast && side >= 0 || a.Criterion != atLeast && side <= 0) == right

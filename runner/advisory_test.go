@@ -82,9 +82,9 @@ func TestEachAdvisoryFires(t *testing.T) {
 			table(60, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i/30), "a", spaced(60)[i] + float64(i/30), 0
 			}), nil},
-		{"spread from few units", "stop", "statistic: standard deviation, of: x, bound: upper, interval: " +
+		{"bound of a spread", "stop", "statistic: standard deviation, of: x, bound: upper, interval: " +
 			"percentile", plain(14), []string{"biased estimate"}},
-		{"spread from few units", "caution", "statistic: standard deviation, of: x, bound: upper, interval: " +
+		{"bound of a spread", "caution", "statistic: standard deviation, of: x, bound: upper, interval: " +
 			"studentized", plain(100), nil},
 		{"skewed mean", "caution", "statistic: mean, of: x, interval: studentized",
 			table(40, func(i int) (string, string, float64, float64) {
@@ -107,7 +107,7 @@ func TestEachAdvisoryFires(t *testing.T) {
 		{"resamples without spread", "stop", "statistic: standard deviation, of: x, interval: studentized",
 			table(12, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i), "a", float64(i / 11), 0
-			}), []string{"spread from few units", "coarse steps", "biased estimate"}},
+			}), []string{"bound of a spread", "coarse steps", "biased estimate"}},
 		{"coarse steps", "caution", "statistic: median, of: x, interval: percentile",
 			table(40, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i), "a", math.Round(spaced(40)[i]), 0
@@ -115,7 +115,7 @@ func TestEachAdvisoryFires(t *testing.T) {
 		{"unstable correction", "caution", "statistic: variance, of: x, interval: bca",
 			table(20, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i), "a", math.Exp(1.5 * (spaced(20)[i] - 10)), 0
-			}), []string{"spread from few units"}},
+			}), []string{"bound of a spread"}},
 		{"limit beyond the possible", "stop", "statistic: Pearson correlation, of: [x, y], interval: basic",
 			table(12, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i), "a", spaced(12)[i], spaced(12)[i] + 0.2*spaced(12)[(i+5)%12]
@@ -130,7 +130,7 @@ func TestEachAdvisoryFires(t *testing.T) {
 			"interval: percentile",
 			table(120, func(i int) (string, string, float64, float64) {
 				return fmt.Sprint("g", i/2), "a", spaced(120)[i], 0
-			}), []string{"spread from few units"}},
+			}), []string{"bound of a spread"}},
 		{"seed could decide", "caution", "statistic: mean, of: x, bound: lower, interval: studentized, accept: " +
 			"{lower_at_least: 9.849}",
 			plain(60), nil},

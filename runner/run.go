@@ -325,7 +325,7 @@ func distribution(v *interval.Values) *record.Distribution {
 		out.Edges = append(out.Edges, high)
 		at := 0
 		for _, edge := range out.Edges[1:bins] {
-			next := sort.SearchFloat64s(sorted, edge)
+			next := sort.SearchFloat64s(sorted, edge-float64(1e-9*step)) // a value on the edge but for rounding is in
 			out.Counts = append(out.Counts, next-at)
 			at = next
 		}

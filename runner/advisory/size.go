@@ -89,12 +89,11 @@ var spreads = []string{"standard deviation", "variance", "coefficient of variati
 	"median absolute deviation", "repeatability standard deviation"}
 
 var spreadFromFewUnits = Definition{
-	Code: "spread from few units",
-	Summary: "A measure of spread from fewer than 60 units (caution), or from fewer than 15 by the percentile or " +
-		"basic method " +
-		"(stop). Without a declared shape the caution stands at every size.",
-	Action: "Look at the classical companion if the data are normal; use the studentized method, or take more " +
-		"units rather than more readings a unit.",
+	Code: "bound of a spread",
+	Summary: "An interval from resampling of a measure of spread: a caution at every size, because it leans on the tails, and " +
+		"a stop with fewer than 15 units by the percentile or basic method.",
+	Action: "Read the classical companion where there is one and the data are normal; prefer the studentized method; " +
+		"take more units rather than more readings a unit.",
 	Source: "Simulation behind this program: nominal 95 % upper percentile bounds of the SD of normal data cover " +
 		"66 % with 6 units, 75 % with 12, 89 % with 60",
 	check: func(in *Input) *finding {

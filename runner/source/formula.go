@@ -2,8 +2,11 @@ package source
 
 import (
 	"errors"
+	"maps"
 	"math"
+	"slices"
 	"strconv"
+	"strings"
 
 	"lotproof/runner/numeric"
 	"lotproof/spec"
@@ -38,11 +41,18 @@ func (t *Table) bind(text string, want expression.Type, usable func(*Column) boo
 		if c.Type == spec.TypeNumber {
 			e.Type = expression.Number
 		}
+		if c.Type == spec.TypeCategory {
+			e.Levels = t.levels(c) // where the plan declares none, a misspelt level would hold for no row and pass unseen
+		}
 		columns = append(columns, e)
 	}
 	program, err := expression.Compile(text, columns, want,
 		expression.Functions{Exp: numeric.Exp, Log: numeric.Log, Log10: log10})
 	if err != nil {
+		var e *expression.Error
+		if errors.As(err, &e) && strings.Contains(e.Problem, "is not a level of column") {
+			e.Fix += "; if it can occur though no row has it, declare the levels of the column"
+		}
 		return nil, err
 	}
 	f := &formula{program: program}
@@ -51,6 +61,23 @@ func (t *Table) bind(text string, want expression.Type, usable func(*Column) boo
 	}
 	f.cells = expression.Row{Numbers: make([]float64, len(f.columns)), Texts: make([]string, len(f.columns))}
 	return f, nil
+}
+
+// levels returns the declared levels of a category column, or else the texts that the file has, in order.
+func (t *Table) levels(c *Column) []string {
+	for _, declared := range t.Source.Columns {
+		if declared.Name == c.Name && len(declared.Levels) > 0 {
+			return declared.Levels
+		}
+	}
+	seen := map[string]bool{}
+	for i, text := range c.Texts {
+		if c.Missing[i] {
+			text = ""
+		}
+		seen[text] = true
+	}
+	return slices.Sorted(maps.Keys(seen))
 }
 
 // log10 returns the decimal logarithm of x > 0 within two units in the last place; a power of ten gives a whole number.

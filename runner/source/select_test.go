@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math"
 	"math/rand/v2"
+	"os"
+	"path/filepath"
 	"slices"
 	"strconv"
 	"strings"
@@ -345,4 +347,26 @@ func usedValues(s *Selection) []string {
 	}
 	slices.Sort(out)
 	return out
+}
+
+// A misspelt level of a category without declared levels would hold for no row; it is a mistake with the levels of the file.
+func TestMisspeltLevelIsFound(t *testing.T) {
+	dir := t.TempDir()
+	if err := os.WriteFile(filepath.Join(dir, "t.csv"), []byte("result\ngood\nnonconforming\n"), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	plan := &spec.Plan{File: "plan.yaml", Sources: []spec.Source{{Name: "t", File: "t.csv",
+		Columns: []spec.Column{{Name: "result", Type: spec.TypeCategory, Decimals: -1}}}},
+		Statistics: []spec.Statistic{{ID: "s", Source: "t", Name: "proportion", Resampling: spec.Resampling{Unit: []string{"row"}},
+			With: []spec.Setting{{Name: "condition", Text: `result == "nonconfroming"`}}}}}
+	_, err := Load(plan, dir)
+	want := `"nonconfroming" is not a level of column result; did you mean "nonconforming"? levels: good, nonconforming; ` +
+		"if it can occur though no row has it, declare the levels of the column"
+	if err == nil || !strings.Contains(err.Error(), want) {
+		t.Errorf("got %v\nwant %s", err, want)
+	}
+	plan.Statistics[0].With[0].Text = `result == "nonconforming"`
+	if _, err := Load(plan, dir); err != nil {
+		t.Error(err)
+	}
 }

@@ -1,5 +1,5 @@
-// Package numeric holds the special functions on the way to a result: exponential and logarithm, normal, Student,
-// chi-square and binomial laws, incomplete beta and gamma functions.
+// Package numeric holds the special functions on the way to a result: exponential and logarithm, normal distribution,
+// quantiles of the Student, chi-square and beta distributions, incomplete beta and gamma functions.
 //
 // Each function gives the same bits on every machine. It uses only operations that IEEE 754 rounds in one way,
 // + − × ÷ and square root, the exact functions of package math (Abs, Floor, Frexp and the like), and integers. Every

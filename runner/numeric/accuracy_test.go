@@ -152,7 +152,8 @@ func TestStudentQuantileNearMiddle(t *testing.T) {
 
 func TestLog1pEdges(t *testing.T) {
 	for _, tt := range []struct{ x, want float64 }{
-		{0, 0}, {-1, math.Inf(-1)}, {math.Inf(1), math.Inf(1)}, {1e300, math.Log(1e300)}, {math.MaxFloat64, math.Log(math.MaxFloat64)},
+		{0, 0}, {-1, math.Inf(-1)}, {math.Inf(1), math.Inf(1)}, {1e300, math.Log(1e300)},
+		{math.MaxFloat64, math.Log(math.MaxFloat64)},
 	} {
 		if got := Log1p(tt.x); got != tt.want {
 			t.Errorf("Log1p(%g) = %v, want %v", tt.x, got, tt.want)

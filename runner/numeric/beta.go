@@ -7,7 +7,9 @@ import "math"
 //
 // Continued fraction: Abramowitz and Stegun 26.5.8, evaluated by Lentz's method; the factor before it by the deviance
 // form of Loader 2000.
-func IncompleteBeta(a, b, x float64) float64 { return incompleteBeta(a, b, x, 1-x) }
+func IncompleteBeta(a, b, x float64) float64 {
+	return incompleteBeta(a, b, x, 1-float64(x)) // converted: inlined, x may be a product that would fuse with the 1
+}
 
 // incompleteBeta takes x and y = 1 − x apart, so that neither loses digits near 0.
 func incompleteBeta(a, b, x, y float64) float64 {

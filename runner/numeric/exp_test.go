@@ -109,3 +109,30 @@ func TestBitsPinned(t *testing.T) {
 		t.Errorf("digest of the bits: %s", got)
 	}
 }
+
+// Do not change; old records depend on it. The same for a + b above 20,000, for probabilities near 0, ½ and 1, and for
+// large arguments of Log1p.
+func TestExtremeBitsPinned(t *testing.T) {
+	h := sha256.New()
+	put := func(v float64) {
+		var b [8]byte
+		binary.BigEndian.PutUint64(b[:], math.Float64bits(v))
+		h.Write(b[:])
+	}
+	for i := 1; i < 40; i++ {
+		p := float64(i) / 40
+		for _, q := range []float64{math.Ldexp(p, -20), 0.5 + math.Ldexp(p, -8), 1 - math.Ldexp(p, -20)} {
+			for _, a := range []float64{0.5, 29, 3e4, 1e6} {
+				put(StudentQuantile(a, q))
+				put(ChiSquareQuantile(a, q))
+				put(BetaQuantile(a, 7.5, q))
+				put(BetaQuantile(3.25, a, q))
+				put(IncompleteBeta(a, 4e4, a/(a+4e4)*(1+q/100)))
+			}
+		}
+		put(Log1p(math.Ldexp(p, 20*i)))
+	}
+	if got := hex.EncodeToString(h.Sum(nil)); got != "a8c14ba455a5b7f2bbb49946d39349e62ec4426f9d6a5140a799e3caf0d7e338" {
+		t.Errorf("digest of the bits: %s", got)
+	}
+}

@@ -7,6 +7,7 @@ import (
 	"encoding/csv"
 	"math"
 	"os"
+	"regexp"
 	"slices"
 	"strconv"
 	"strings"
@@ -137,16 +138,30 @@ func value(v *float64) any {
 	return *v
 }
 
-// Each trap is named by its advisory, with the severity that README.md tells, and nothing else stops an interval.
+// Each trap is named by its advisory, with the severity that README.md tells, and nothing else stops an interval. The
+// list of smaller remarks in README.md names every other advisory of the run, and no further one.
 func TestTrapsAreNamed(t *testing.T) {
 	r := results(t)
-	var stops []string
+	var stops, remarks []string
 	for _, s := range r.Statistics {
 		for _, a := range s.Advisories {
 			if a.Severity == "stop" {
 				stops = append(stops, s.ID+": "+a.Code)
+			} else {
+				remarks = append(remarks, a.Code)
 			}
 		}
+	}
+	readme, err := os.ReadFile("README.md")
+	must(t, err)
+	var told []string
+	for _, match := range regexp.MustCompile(`(?m)^- \*([A-Z][a-z -]*)\*: `).FindAllStringSubmatch(string(readme), -1) {
+		told = append(told, strings.ToLower(match[1]))
+	}
+	slices.Sort(told)
+	slices.Sort(remarks)
+	if remarks = slices.Compact(remarks); !slices.Equal(told, remarks) {
+		t.Errorf("README.md remarks on %q, the run on %q", told, remarks)
 	}
 	want := []string{"p10 12 weeks: quantile out of reach", "mean by strips: pseudo-replication"}
 	if !slices.Equal(stops, want) {
